@@ -1,0 +1,3 @@
+std = "lua54"
+max_line_length = 110
+files["tests"] = { std = "+busted" }

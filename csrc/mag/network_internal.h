@@ -1,0 +1,64 @@
+/* The network's inside, shared by network.c, network_solve.c, network_result.c and
+ * network_sensitivity.c only. */
+#ifndef EF_MAG_NETWORK_INTERNAL_H
+#define EF_MAG_NETWORK_INTERNAL_H
+
+#include "../num/band.h"
+#include "network.h"
+
+#define EF_GROUND ((size_t)-1)
+
+/* What the tangent matrix in `matrix` stands for. */
+typedef enum { EF_FACTOR_NONE, EF_FACTOR_INCREMENTAL, EF_FACTOR_APPARENT } ef_factor_kind;
+
+struct ef_network {
+  size_t nodes, branches, elements, windings, couplings, laws, unknowns;
+  ef_branch *branch;
+  ef_element *element;
+  ef_turns *coupling;
+  size_t *place;   /* nodes: index in the equations, EF_GROUND for the reference node */
+  size_t *hint;    /* elements: piece of the curve last used */
+  ef_law *law;     /* laws of the last solve; their arrays stay with the caller */
+  double *offset;  /* laws: coercive field of the last solve */
+  double *current; /* windings */
+  double *source, *chain_permeance, *chain_flux;           /* branches */
+  double *drop, *flux, *density, *field, *tangent, *yield; /* elements */
+  double *step;                                            /* elements: change of drop */
+  double *potential, *balance, *magnitude, *floor;         /* nodes */
+  double *unknown;                                         /* unknowns */
+  double *response;   /* windings x elements: d drop / d current */
+  double *inductance; /* windings x windings, scratch */
+  ef_band matrix;
+  ef_factor_kind factored;
+  int solved;
+  double *numbers; /* the block behind all arrays of doubles */
+  size_t number_count;
+};
+
+/* Flux, flux density and tangent of one element at the drop u. */
+void ef_element_at(ef_network *n, size_t element, double drop, double *flux, double *density,
+                   double *tangent);
+
+/* Coenergy of one element at its present drop, J. */
+double ef_element_coenergy(const ef_network *n, size_t element);
+
+/* Condenses chains: permeance of each branch from the elements' tangents, whose inverses are left
+ * in n->yield. */
+void ef_network_condense(ef_network *n, const double *tangent);
+
+/* Fills n->matrix from the branches' permeances and factorises it. */
+ef_status ef_network_factor(ef_context *context, ef_network *n, ef_factor_kind kind);
+
+/* Brings the branches' fluxes in n->chain_flux, driven by some change, into balance at the nodes
+ * with the factor at hand. The second pass refines: in a stiff loop the flux is a small difference
+ * of large terms. */
+void ef_network_settle(ef_network *n);
+
+/* Adds flux leaving along each branch (positive from -> to) to the right-hand side n->unknown. */
+void ef_network_clear_rhs(ef_network *n);
+void ef_network_add_rhs(ef_network *n, size_t branch, double flux);
+
+/* Difference of potential from - to of a branch in the solution n->unknown of the equations. */
+double ef_network_unknown_drop(const ef_network *n, size_t branch);
+
+#endif

@@ -1,0 +1,277 @@
+/* Newton's method on the coenergy. The unknowns are the nodes' potentials; the drops inside a chain
+ * follow by condensation: with the tangent k = d flux/d u of each element, a chain with drop U and
+ * fluxes f carries the flux K (U + sum((f - k u)/k)) + ..., K = 1/sum(1/k), so it acts as one
+ * branch. */
+#include <float.h>
+#include <math.h>
+#include <string.h>
+
+#include "network_internal.h"
+
+void ef_element_at(ef_network *n, size_t index, double drop, double *flux, double *density,
+                   double *tangent) {
+  const ef_element *e = &n->element[index];
+  if (e->law == EF_NO_LAW) {
+    *flux = e->permeance * drop;
+    *density = 0;
+    *tangent = e->permeance;
+    return;
+  }
+  double h = drop / e->length;
+  ef_law_point p =
+      ef_law_at(&n->law[e->law], h + n->offset[e->law] * e->remanence, &n->hint[index]);
+  *density = EF_MU0 * h + p.polarisation;
+  *flux = e->area * *density + e->bypass * drop;
+  *tangent = e->area / e->length * (EF_MU0 + p.slope) + e->bypass;
+}
+
+static void evaluate(ef_network *n) {
+  for (size_t i = 0; i < n->elements; i++)
+    ef_element_at(n, i, n->drop[i], &n->flux[i], &n->density[i], &n->tangent[i]);
+}
+
+void ef_network_condense(ef_network *n, const double *tangent) {
+  for (size_t k = 0; k < n->branches; k++) {
+    const ef_branch *b = &n->branch[k];
+    double reluctance = 0;
+    for (size_t i = b->first; i < b->first + b->count; i++)
+      reluctance += n->yield[i] = 1 / tangent[i];
+    n->chain_permeance[k] = 1 / reluctance;
+  }
+}
+
+ef_status ef_network_factor(ef_context *context, ef_network *n, ef_factor_kind kind) {
+  size_t stride = n->matrix.width + 1;
+  double *band = n->matrix.band;
+  memset(band, 0, stride * n->unknowns * sizeof *band);
+  for (size_t k = 0; k < n->branches; k++) {
+    size_t a = n->place[n->branch[k].from], b = n->place[n->branch[k].to];
+    double p = n->chain_permeance[k];
+    if (a != EF_GROUND) band[a * stride] += p;
+    if (b != EF_GROUND) band[b * stride] += p;
+    if (a == EF_GROUND || b == EF_GROUND) continue;
+    size_t row = a > b ? a : b, column = a > b ? b : a;
+    band[row - column + column * stride] -= p;
+  }
+  n->factored = EF_FACTOR_NONE;
+  ef_status status = ef_band_factor(context, &n->matrix);
+  if (status == EF_OK) n->factored = kind;
+  return status;
+}
+
+void ef_network_clear_rhs(ef_network *n) {
+  memset(n->unknown, 0, n->unknowns * sizeof *n->unknown);
+}
+
+void ef_network_add_rhs(ef_network *n, size_t branch, double flux) {
+  size_t a = n->place[n->branch[branch].from], b = n->place[n->branch[branch].to];
+  if (a != EF_GROUND) n->unknown[a] -= flux;
+  if (b != EF_GROUND) n->unknown[b] += flux;
+}
+
+double ef_network_unknown_drop(const ef_network *n, size_t branch) {
+  size_t a = n->place[n->branch[branch].from], b = n->place[n->branch[branch].to];
+  return (a == EF_GROUND ? 0 : n->unknown[a]) - (b == EF_GROUND ? 0 : n->unknown[b]);
+}
+
+void ef_network_settle(ef_network *n) {
+  for (int pass = 0; pass < 2; pass++) {
+    ef_network_clear_rhs(n);
+    for (size_t k = 0; k < n->branches; k++)
+      if (n->chain_flux[k] != 0) ef_network_add_rhs(n, k, n->chain_flux[k]);
+    ef_band_solve(&n->matrix, n->unknown);
+    for (size_t k = 0; k < n->branches; k++)
+      n->chain_flux[k] += n->chain_permeance[k] * ef_network_unknown_drop(n, k);
+  }
+}
+
+static double potential_drop(const ef_network *n, size_t k) {
+  return n->potential[n->branch[k].from] - n->potential[n->branch[k].to] + n->source[k];
+}
+
+/* One Newton step from the present drops: n->step per element; the change of the potentials is left
+ * in n->unknown. With `fit` the drops of each chain are brought to its branch's drop, so that a
+ * start that does not fit the sources is mended by the first full step. Later steps only add
+ * changes: a stiff branch would turn the rounding of its two large potentials into flux again and
+ * again. */
+static ef_status newton_step(ef_context *context, ef_network *n, int fit) {
+  ef_network_condense(n, n->tangent);
+  ef_network_clear_rhs(n);
+  for (size_t k = 0; k < n->branches; k++) {
+    const ef_branch *b = &n->branch[k];
+    double sum = 0, excess = 0;
+    for (size_t i = b->first; i < b->first + b->count; i++) {
+      sum += n->flux[i] * n->yield[i];
+      excess += n->drop[i];
+    }
+    double lacking = fit ? potential_drop(n, k) - excess : 0;
+    n->chain_flux[k] = n->chain_permeance[k] * (lacking + sum);
+    ef_network_add_rhs(n, k, n->chain_flux[k]);
+  }
+  ef_status status = ef_network_factor(context, n, EF_FACTOR_INCREMENTAL);
+  if (status != EF_OK) return status;
+  ef_band_solve(&n->matrix, n->unknown);
+  for (size_t k = 0; k < n->branches; k++) {
+    const ef_branch *b = &n->branch[k];
+    double flux = n->chain_flux[k] + n->chain_permeance[k] * ef_network_unknown_drop(n, k);
+    for (size_t i = b->first; i < b->first + b->count; i++)
+      n->step[i] = (flux - n->flux[i]) * n->yield[i];
+  }
+  return EF_OK;
+}
+
+static void move(ef_network *n, double share) {
+  for (size_t i = 0; i < n->elements; i++)
+    n->drop[i] += share * n->step[i];
+  for (size_t i = 0; i < n->nodes; i++)
+    if (n->place[i] != EF_GROUND) n->potential[i] += share * n->unknown[n->place[i]];
+  evaluate(n);
+}
+
+/* Derivative of the coenergy along the step, and the size of its terms. */
+static double slope_along(const ef_network *n, double *size) {
+  double sum = 0, magnitude = 0;
+  for (size_t i = 0; i < n->elements; i++) {
+    double term = n->flux[i] * n->step[i];
+    sum += term;
+    magnitude += fabs(term);
+  }
+  *size = magnitude;
+  return sum;
+}
+
+static double total_coenergy(const ef_network *n) {
+  double sum = 0;
+  for (size_t i = 0; i < n->elements; i++)
+    sum += ef_element_coenergy(n, i);
+  return sum;
+}
+
+/* Steps that may be accepted on the slope alone before the coenergy itself has to fall. */
+enum { TRUSTING_STEPS = 20 };
+
+/* Moves along the step. The coenergy is convex, so while its slope along the step stays negative it
+ * has fallen. A little past the minimum (slope below a tenth of the first, as near the solution) is
+ * taken too, for a limited number of steps, after which the coenergy must not have risen beyond
+ * rounding. Otherwise the fall is checked (Armijo) and the step shortened by the secant of the
+ * slope, which makes the method converge from anywhere. */
+static void line_search(ef_network *n, int trusting) {
+  double size, start_slope = slope_along(n, &size), share = 1;
+  double rounding = 64 * DBL_EPSILON * size, small = -0.1 * start_slope;
+  double before = NAN;
+  for (int i = 0; i < 60; i++) {
+    move(n, share);
+    double slope = slope_along(n, &size);
+    if (slope <= rounding || start_slope >= -rounding || (trusting && slope <= small)) return;
+    double after = total_coenergy(n);
+    move(n, -share);
+    if (isnan(before)) before = total_coenergy(n);
+    double allowed = slope <= small ? 64 * DBL_EPSILON * before : 1e-4 * share * start_slope;
+    if (after <= before + allowed) {
+      move(n, share);
+      return;
+    }
+    double secant = start_slope / (start_slope - slope);
+    share *= fmin(fmax(secant, 0.1), 0.9);
+  }
+  move(n, share);
+}
+
+/* Sums up each node: flux balance, flux magnitudes, rounding floor. Returns the largest magnitude.
+ */
+static double sum_up_nodes(ef_network *n) {
+  double largest = 0;
+  memset(n->balance, 0, n->nodes * sizeof *n->balance);
+  memset(n->magnitude, 0, n->nodes * sizeof *n->magnitude);
+  memset(n->floor, 0, n->nodes * sizeof *n->floor);
+  for (size_t k = 0; k < n->branches; k++) {
+    const ef_branch *b = &n->branch[k];
+    double out = n->flux[b->first], in = n->flux[b->first + b->count - 1];
+    double floor = 4 * DBL_EPSILON * n->chain_permeance[k] *
+                   (fabs(n->potential[b->from]) + fabs(n->potential[b->to]) + fabs(n->source[k]));
+    n->balance[b->from] -= out;
+    n->balance[b->to] += in;
+    n->magnitude[b->from] += fabs(out);
+    n->magnitude[b->to] += fabs(in);
+    n->floor[b->from] += floor;
+    n->floor[b->to] += floor;
+  }
+  for (size_t i = 0; i < n->nodes; i++)
+    largest = fmax(largest, n->magnitude[i]);
+  return largest;
+}
+
+static int chains_agree(const ef_network *n, double tolerance, double floor) {
+  for (size_t k = 0; k < n->branches; k++) {
+    const ef_branch *b = &n->branch[k];
+    double out = n->flux[b->first];
+    double limit = tolerance * fabs(out) + floor + n->floor[b->from] + n->floor[b->to];
+    for (size_t i = b->first + 1; i < b->first + b->count; i++)
+      if (!(fabs(n->flux[i] - out) <= limit)) return 0;
+  }
+  return 1;
+}
+
+/* Largest imbalance relative to the flux magnitudes; *met tells whether every node and chain is
+ * within its limit. */
+static double imbalance(ef_network *n, double tolerance, int *met) {
+  double floor = 16 * DBL_EPSILON * sum_up_nodes(n), worst = 0;
+  *met = chains_agree(n, tolerance, floor);
+  for (size_t i = 0; i < n->nodes; i++) {
+    double off = fabs(n->balance[i]);
+    if (!(off <= tolerance * n->magnitude[i] + n->floor[i] + floor)) *met = 0;
+    if (n->magnitude[i] > 0) worst = fmax(worst, off / n->magnitude[i]);
+  }
+  return worst;
+}
+
+static ef_status take_input(ef_context *context, ef_network *n, const ef_network_input *input) {
+  for (size_t i = 0; i < n->windings; i++)
+    if (!isfinite(input->current[i]))
+      return ef_fail(context, EF_BAD_VALUE, "current", input->current[i], "a finite number");
+  for (size_t i = 0; i < n->laws; i++) {
+    double offset = input->coercive_field ? input->coercive_field[i] : 0;
+    if (!isfinite(offset))
+      return ef_fail(context, EF_BAD_VALUE, "coercive field", offset, "a finite number");
+    n->law[i] = input->law[i];
+    n->offset[i] = offset;
+  }
+  memcpy(n->current, input->current, n->windings * sizeof *n->current);
+  memset(n->source, 0, n->branches * sizeof *n->source);
+  for (size_t i = 0; i < n->couplings; i++)
+    n->source[n->coupling[i].branch] += n->coupling[i].turns * n->current[n->coupling[i].winding];
+  return EF_OK;
+}
+
+ef_status ef_network_solve(ef_context *context, ef_network *n, const ef_network_input *input,
+                           ef_network_report *report) {
+  int warm = input->warm && n->solved, met = 0;
+  n->solved = 0;
+  n->factored = EF_FACTOR_NONE;
+  ef_status status = take_input(context, n, input);
+  if (status != EF_OK) return status;
+  if (!warm) {
+    memset(n->drop, 0, n->elements * sizeof *n->drop);
+    memset(n->potential, 0, n->nodes * sizeof *n->potential);
+  }
+  evaluate(n);
+  for (int i = 0; i <= context->max_iterations; i++) {
+    /* The first full step makes the start fit the sources; from there every step is a descent. */
+    status = newton_step(context, n, i == 0);
+    if (status != EF_OK) return status;
+    if (i == 0)
+      move(n, 1);
+    else
+      line_search(n, i <= TRUSTING_STEPS);
+    double residual = imbalance(n, context->tolerance, &met);
+    if (!isfinite(residual)) break;
+    if (met) {
+      n->solved = 1;
+      n->factored = EF_FACTOR_NONE; /* the factor belongs to the point before the last step */
+      *report = (ef_network_report){i + 1, residual};
+      return EF_OK;
+    }
+  }
+  return ef_fail(context, EF_NOT_CONVERGED, "number of Newton steps",
+                 (double)context->max_iterations, "convergence; no result is given");
+}

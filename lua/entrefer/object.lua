@@ -1,0 +1,39 @@
+--- Immutable objects: a constructor fills a plain table once; after that it can only be read.
+-- @module entrefer.object
+local fail = require "entrefer.fail"
+
+local object = {}
+
+--- A class of immutable objects.
+-- @string name trade name of the kind, used in messages and by `tostring`
+-- @tparam table methods functions found on every object
+-- @treturn function `make(fields)`: an object that reads `fields` and `methods`, and refuses writes
+-- @treturn function `fields_of(object)`: the table behind an object, or nil for anything else
+function object.class(name, methods)
+  local store = setmetatable({}, { __mode = "k" })
+  local meta = { __name = name, __metatable = "protected" }
+  function meta.__index(self, key)
+    local value = store[self][key]
+    if value == nil then return methods[key] end
+    return value
+  end
+  function meta.__newindex(_, key)
+    fail.text(tostring(key), ("a %s can't be changed; use :with{ %s = ... } to get a changed copy")
+      :format(name, tostring(key)))
+  end
+  function meta.__pairs(self)
+    return next, store[self], nil
+  end
+  function meta.__tostring(self)
+    local label = store[self].name
+    return label and ("%s %q"):format(name, label) or name
+  end
+  local function make(fields)
+    local self = setmetatable({}, meta)
+    store[self] = fields
+    return self
+  end
+  return make, function(self) return store[self] end
+end
+
+return object

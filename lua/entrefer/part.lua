@@ -1,0 +1,227 @@
+--- A part: core, material, gaps and windings, with one nonlinear model behind all questions.
+--
+--    local part = ef.part{
+--      core = ef.core "E 42/21/15", material = ef.material "PW3b",
+--      gaps = { { leg = "centre", length = "1.6 mm" } },
+--      windings = { { turns = 24, leg = "centre", wire = ef.wire{ round = "1.6 mm", grade = 2 } } },
+--    }
+--    local s = part:solve{ current = 12, temperature = 85 }
+--
+-- @module entrefer.part
+local core_solver = require "entrefer.core"
+local derivatives = require "entrefer.part.derivatives"
+local estimate = require "entrefer.part.estimate"
+local fail = require "entrefer.fail"
+local gaps = require "entrefer.part.gaps"
+local inverse = require "entrefer.part.inverse"
+local ladder = require "entrefer.part.ladder"
+local loop = require "entrefer.part.loop"
+local material = require "entrefer.material"
+local object = require "entrefer.object"
+local quantity = require "entrefer.quantity"
+local ring = require "entrefer.part.ring"
+local shape = require "entrefer.shape"
+local solve = require "entrefer.part.solve"
+local windings = require "entrefer.part.windings"
+
+local part = {}
+
+local fields = { "core", "material", "gaps", "windings", "bobbin", "name", "note" }
+local bobbin_default = { wall = 0.8e-3, clearance = 0.2e-3, flange = 0.8e-3 }
+
+local methods = {}
+local make, fields_of = object.class("part", methods)
+
+local function topology_of(core)
+  return core.geometry.topology or "loop"
+end
+
+local function read_bobbin(bobbin)
+  local read = {}
+  fail.fields(bobbin or {}, { "wall", "clearance", "flange" }, "bobbin")
+  for name, default in pairs(bobbin_default) do
+    local value = (bobbin or {})[name]
+    read[name] = value and quantity.read(value, "m", "bobbin " .. name, { min = 0 }) or default
+  end
+  return read
+end
+
+local function section_gaps(list, core)
+  local entries, names = {}, {}
+  for i, section in ipairs(core.sections) do names[i] = section.name end
+  for i, entry in ipairs(list) do
+    local known = false
+    for _, name in ipairs(names) do known = known or name == (entry.leg or names[1]) end
+    if not known then fail.unknown(("gap %d leg"):format(i), tostring(entry.leg), names) end
+    local copy = {}
+    for key, value in pairs(entry) do copy[key] = value end
+    copy.leg = "ring" -- a custom loop has sections for legs; the reader only checks the rest
+    entries[i] = gaps.read(copy, i, "ring", "ring")
+    entries[i].leg = entry.leg or names[1]
+    entries[i].legs = { entries[i].leg }
+  end
+  return entries
+end
+
+local function read_gaps(list, core, topology)
+  if topology == "loop" then return section_gaps(list, core) end
+  local default = topology == "three_leg" and "centre" or topology == "ring" and "ring" or "all"
+  local entries = {}
+  for i, entry in ipairs(list) do entries[i] = gaps.read(entry, i, topology, default) end
+  return entries
+end
+
+-- Gaps of rings and loops have no height on a leg: one unit for each.
+local function plain_units(entries)
+  local units = {}
+  for _, entry in ipairs(entries) do
+    entry.units = {}
+    for _ = 1, entry.count do
+      local unit = { entry = entry, leg = entry.legs[1], length = entry.length, z = 0 }
+      entry.units[#entry.units + 1] = unit
+      units[#units + 1] = unit
+    end
+  end
+  return units
+end
+
+local function build_network(self, topology)
+  local geometry = self.core.geometry
+  if topology == "ring" then return ring.build(geometry, self.units, self.windings) end
+  if topology == "loop" then return loop.build(self.core.sections, self.units, self.windings) end
+  return ladder.build(geometry, self.core.shape, self.units, self.height, self.windings)
+end
+
+local function collect_notes(self)
+  local notes, method = {}, { network = "nonlinear reluctance network", gaps = {} }
+  for i, entry in ipairs(self.gap_entries) do
+    method.gaps[i] = entry.units[1].method
+    for _, note in ipairs(entry.units[1].notes) do notes[#notes + 1] = note end
+  end
+  if #self.material.curves == 1 then
+    notes[#notes + 1] = ("%s has one curve, at %g degC: used at every temperature"):format(
+      tostring(self.material), self.material.curves[1].temperature)
+  end
+  return notes, method
+end
+
+--- Builds a part.
+-- @tparam table spec
+--   `core`: from `ef.core`, or what it takes; `material`: from `ef.material`, or what it takes;
+--   `gaps`: list of `{ leg = "centre" | "left" | "right" | "outer" | "all" (a ring needs none),
+--   length (m, of each gap), kind = "ground" | "spacer" | "sawn", count = 1, position (m from the
+--   leg's middle), tolerance (m), pocket = { diameter, depth } or { diameter, through = true },
+--   method = "conformal" | "handbook" | "added length" | "plain", or permeance (H) given }`;
+--   `windings`: list of `{ turns, leg, wire, span = { from, to } (m), reverse, name; on a ring angle
+--   and extent (rad) }`: positive current in any winding aids winding 1 unless `reverse`;
+--   `bobbin` = { wall, clearance, flange } (m; default 0.8, 0.2, 0.8 mm); `name`, `note`
+-- @treturn part with `core`, `material`, `gap_entries`, `windings`, `fill` (share of the window)
+-- @raise an error table naming the field: unknown legs, a gap longer than its leg, a build that does
+--   not fit the window...
+function part.new(spec)
+  if type(spec) ~= "table" then fail("part", spec, "a table") end
+  fail.fields(spec, fields, "part")
+  local self = { spec = spec, fields_of = fields_of, name = spec.name, note = spec.note,
+    core = shape.of(spec.core, "core"), material = material.of(spec.material, "material"),
+    bobbin = read_bobbin(spec.bobbin) }
+  local topology = topology_of(self.core)
+  self.topology = topology
+  self.gap_entries = read_gaps(spec.gaps or {}, self.core, topology)
+  if topology == "ring" or topology == "loop" then
+    self.units, self.height = plain_units(self.gap_entries), self.core.geometry.window_height or 0
+  else
+    self.units, self.height = gaps.expand(self.gap_entries, self.core.geometry.window_height)
+  end
+  local default = topology == "three_leg" and "centre" or topology == "ring" and "ring" or "left"
+  self.windings = windings.read(spec.windings or {}, topology, self.core, self.height, default)
+  self.fill = windings.check(self.windings, self.core.geometry, self.bobbin, self.height)
+  local net = build_network(self, topology)
+  self.solver = core_solver.network(net:spec())
+  self.limbs, self.positions, self.branches = net.limbs, net.positions, net.branches
+  self.plain = estimate.prepare(self)
+  self.notes, self.method = collect_notes(self)
+  return make(self)
+end
+
+--- The part itself, or a new one from a table.
+function part.of(value, field)
+  if type(value) == "table" and fields_of(value) then return value end
+  if type(value) ~= "table" then fail(field or "part", value, "a part") end
+  return part.new(value)
+end
+
+--- A changed copy: fields of `part.new`, and the shortcuts `turns` (of winding 1) and `gap` (length
+-- of gap 1, m).
+-- @tparam table changes
+-- @treturn part
+function methods:with(changes)
+  local spec = {}
+  for key, value in pairs(fields_of(self).spec) do spec[key] = value end
+  local function first_changed(list, key, value)
+    if not list or not list[1] then
+      fail.text(key, ("there is no first entry whose %s could be changed"):format(key))
+    end
+    local copy, first = { table.unpack(list) }, {}
+    for k, v in pairs(list[1]) do first[k] = v end
+    first[key] = value
+    copy[1] = first
+    return copy
+  end
+  for key, value in pairs(changes) do
+    if key == "turns" then
+      spec.windings = first_changed(spec.windings, "turns", value)
+    elseif key == "gap" then
+      spec.gaps = first_changed(spec.gaps, "length", value)
+    else
+      spec[key] = value
+    end
+  end
+  return part.new(spec)
+end
+
+--- Solves one operating point.
+-- @tparam table at `current` (A; a list for several windings), `temperature` (degC; default 25),
+--   `remanence` (share of the coercive field retained, -1..1), `only` (list of result names: just
+--   those, faster)
+-- @treturn table `flux_linkage` (Wb), `inductance` (H, flux linkage / current; its limit at 0 A;
+--   matrix for several windings), `incremental_inductance` (H), `energy`, `coenergy` (J),
+--   `limbs[name] = { flux_density (T, mean over the section, largest along the limb), position (m
+--   from the leg's middle; ring: rad from the gap), mean (T, along the limb), drop (A) }`,
+--   `gaps[i] = { flux_density (T, mean over the pole face), centre_flux_density (T, in the middle),
+--   flux (Wb), drop (A), force (N) }`, `core_flux_density` (T, largest of the limbs) and
+--   `core_flux_density_limb`, `estimate` (plain series circuit, with `ratio`), `error`, `method`,
+--   `warnings`
+-- @raise an error table; a failed solve never gives a number
+function methods:solve(at)
+  return solve.once(fields_of(self), at)
+end
+
+--- Solves a range of currents at one temperature.
+-- @tparam table at as `solve`, with `current` a list or `{ from, to, points }`
+-- @treturn table struct of arrays: `current`, and one array for each name in `only` (default flux
+--   linkage, both inductances, core and gap flux density)
+function methods:sweep(at)
+  return solve.sweep(fields_of(self), at)
+end
+
+--- Derivatives of the results; see `entrefer.part.derivatives`.
+function methods:derivatives(at)
+  return derivatives.at(self, fields_of(self), at)
+end
+
+--- The length of gap 1 that gives a wanted inductance; see `entrefer.part.inverse`.
+function methods:gap_for(at)
+  return inverse.gap(self, fields_of(self), at)
+end
+
+--- The turns of winding 1 that give a wanted inductance; see `entrefer.part.inverse`.
+function methods:turns_for(at)
+  return inverse.turns(self, fields_of(self), at)
+end
+
+--- The current at a fallen inductance or at a flux density; see `entrefer.part.inverse`.
+function methods:current_for(at)
+  return inverse.current(self, fields_of(self), at)
+end
+
+return part

@@ -1,0 +1,225 @@
+--- The gaps of a part: from the user's entries to single gaps with a place on a leg, and the
+-- permeance of each.
+-- @module entrefer.part.gaps
+local core = require "entrefer.core"
+local fail = require "entrefer.fail"
+local quantity = require "entrefer.quantity"
+
+local gaps = {}
+
+local entry_fields = { "leg", "length", "kind", "count", "position", "tolerance", "pocket",
+  "method", "permeance", "by_length", "name" }
+local kinds = { ground = true, spacer = true, sawn = true }
+
+local legs_of = {
+  three_leg = { centre = { "centre" }, left = { "left" }, right = { "right" },
+    outer = { "left", "right" }, all = { "centre", "left", "right" } },
+  two_leg = { left = { "left" }, right = { "right" }, all = { "left", "right" } },
+  ring = { ring = { "ring" } },
+}
+
+--- The legs that a name stands for on a core; raises with the names the core has.
+function gaps.legs(topology, name, field)
+  local known = legs_of[topology]
+  if known[name] then return known[name] end
+  local names = {}
+  for leg in pairs(known) do names[#names + 1] = leg end
+  table.sort(names)
+  fail.unknown(field, tostring(name), names)
+end
+
+local function read_pocket(pocket, label)
+  if pocket == nil then return nil end
+  fail.fields(pocket, { "diameter", "depth", "through" }, label)
+  local through = pocket.through == true
+  return {
+    diameter = quantity.read(pocket.diameter, "m", label .. " diameter", { positive = true }),
+    depth = through and 0 or
+      quantity.read(pocket.depth, "m", label .. " depth", { positive = true }),
+    through = through,
+  }
+end
+
+local function check_choice(value, allowed, field)
+  if allowed[value] then return value end
+  local names = {}
+  for name in pairs(allowed) do names[#names + 1] = name end
+  table.sort(names)
+  fail.unknown(field, tostring(value), names)
+end
+
+local methods = {}
+for _, name in ipairs(core.gap_methods()) do methods[name] = true end
+
+--- Reads one entry of a part's gap list.
+-- @tparam table entry see `entrefer.part`
+-- @number index of the entry, for messages
+-- @string topology of the core
+-- @string default_leg
+function gaps.read(entry, index, topology, default_leg)
+  local label = "gap " .. index
+  if type(entry) ~= "table" then fail(label, entry, "a table") end
+  fail.fields(entry, entry_fields, label)
+  local leg = entry.leg or default_leg
+  local kind = check_choice(entry.kind or (topology == "ring" and "sawn" or "ground"), kinds,
+    label .. " kind")
+  if kind == "spacer" and leg ~= "all" and topology ~= "ring" then
+    fail(label .. " leg", leg, "\"all\" for a spacer: it lifts the halves apart on every leg")
+  end
+  return {
+    label = label, leg = leg, legs = gaps.legs(topology, leg, label .. " leg"), kind = kind,
+    length = quantity.read(entry.length, "m", label .. " length", { positive = true }),
+    count = quantity.read(entry.count or 1, "1", label .. " count",
+      { positive = true, integer = true, max = 64 }),
+    position = quantity.read(entry.position or 0, "m", label .. " position"),
+    tolerance = entry.tolerance and
+      quantity.read(entry.tolerance, "m", label .. " tolerance", { min = 0 }),
+    pocket = read_pocket(entry.pocket, label .. " pocket"),
+    method = check_choice(entry.method or "conformal", methods, label .. " method"),
+    permeance = entry.permeance and
+      quantity.read(entry.permeance, "H", label .. " permeance", { positive = true }),
+    by_length = entry.by_length,
+  }
+end
+
+local function place_on_leg(entry, leg, height, units)
+  local pitch = height / entry.count
+  for i = 1, entry.count do
+    units[#units + 1] = { entry = entry, leg = leg, length = entry.length,
+      z = entry.position + pitch * (i - (entry.count + 1) / 2) }
+  end
+end
+
+local function check_leg(leg, units, height)
+  local edge, before = -height / 2, nil
+  for _, unit in ipairs(units) do
+    local label = unit.entry.label
+    if unit.length >= height then
+      fail(label .. " length", unit.length,
+        ("below %.4g m, the length of the %s leg"):format(height, leg))
+    end
+    if unit.z - unit.length / 2 <= edge then
+      fail(label .. " position", unit.z, before and ("clear of %s on the %s leg")
+        :format(before.entry.label, leg) or ("inside the %s leg, which is %.4g m long")
+        :format(leg, height))
+    end
+    edge, before = unit.z + unit.length / 2, unit
+  end
+  if before and edge >= height / 2 then
+    fail(before.entry.label .. " position", before.z,
+      ("inside the %s leg, which is %.4g m long"):format(leg, height))
+  end
+end
+
+--- Expands the entries to single gaps on legs.
+-- @tparam table entries from `gaps.read`
+-- @number window_height m, length of the legs without spacers
+-- @treturn table units: list of `{ entry, leg, z, length }`; `units.by_leg[leg]` sorted by z
+-- @treturn number height of the legs with spacers, m
+function gaps.expand(entries, window_height)
+  local height = window_height
+  for _, entry in ipairs(entries) do
+    if entry.kind == "spacer" then height = height + entry.length * entry.count end
+  end
+  local units = { by_leg = {} }
+  for _, entry in ipairs(entries) do
+    entry.units = {}
+    for _, leg in ipairs(entry.legs) do
+      local first = #units + 1
+      place_on_leg(entry, leg, height, units)
+      for i = first, #units do
+        local unit = units[i]
+        entry.units[#entry.units + 1] = unit
+        local list = units.by_leg[leg] or {}
+        list[#list + 1] = unit
+        units.by_leg[leg] = list
+      end
+    end
+  end
+  for leg, list in pairs(units.by_leg) do
+    table.sort(list, function(a, b) return a.z < b.z end)
+    check_leg(leg, list, height)
+  end
+  return units, height
+end
+
+-- With the winding along the leg the potential of a side wall falls linearly to zero at the yoke;
+-- integrating 2/(pi y) (1 - y/h) gives the edge of a wall of height h/e at full potential. A
+-- neighbouring gap takes over half of the iron between. Without a winding the wall keeps its
+-- potential, up to the outer face of the yoke.
+local function free_reach(iron, to_gap, wound, yoke)
+  local share = to_gap and iron / 2 or iron
+  if wound then return share / math.exp(1) end
+  return to_gap and share or share + yoke
+end
+
+local function window_edge(facing_gap, window_width, reach)
+  -- Both walls of the window at the same potential: a slot; else a leg at the potential of the
+  -- gap's middle. Each has its own effective reach; a shorter free wall limits both.
+  local effective = facing_gap and 2 * window_width / math.pi or window_width / math.pi
+  if reach < effective then return { kind = "free exact", reach = reach } end
+  return { kind = facing_gap and "near yoke" or "near leg", reach = window_width }
+end
+
+--- The edges of one gap.
+-- @tparam table unit single gap
+-- @tparam table around `below`, `above`: iron to the next gap or yoke, m; `below_gap`, `above_gap`:
+--   whether that is a gap; `wound`; `yoke` thickness, m; `window_width`, m; `facing`: list of
+--   booleans for the sides x_low, x_high: nil = open side, false = leg without a gap there, true =
+--   leg with a gap at the same height; `shell`: the facing leg goes all around; `closed`: the pole
+--   goes on in the depth direction
+function gaps.edges(around)
+  local reach = math.min(
+    free_reach(around.below, around.below_gap, around.wound, around.yoke),
+    free_reach(around.above, around.above_gap, around.wound, around.yoke))
+  local free = { kind = "free exact", reach = reach }
+  local function side(facing)
+    if facing == nil then return free end
+    return window_edge(facing, around.window_width, reach)
+  end
+  local x_low, x_high = side(around.facing[1]), side(around.facing[2])
+  local y = around.shell and x_high or around.closed and { kind = "none", reach = reach } or free
+  return { x_low = x_low, x_high = x_high, y_low = y, y_high = y }
+end
+
+local function apply_pocket(unit, pole, label)
+  local pocket = unit.entry.pocket
+  if not pocket then return end
+  local most = math.min(pole.width, pole.depth)
+  if pocket.diameter >= most then
+    fail(label .. " pocket diameter", pocket.diameter,
+      ("below %.4g m, the width of the pole"):format(most))
+  end
+  local result = core.pocket(pocket, unit.length)
+  if result.permeance_loss >= unit.permeance then
+    fail(label .. " pocket diameter", pocket.diameter, "a pocket that leaves some of the gap")
+  end
+  unit.permeance = unit.permeance - result.permeance_loss
+  unit.by_length = unit.by_length - result.loss_by_length
+  unit.centre_field = result.centre_field
+  unit.local_length = result.local_length
+  unit.notes[#unit.notes + 1] = label .. ": pocket or hole by an approximate mode sum"
+end
+
+--- Fills in a gap's permeance (H), its derivative by length (H/m), the field in its middle and on
+-- its pole face relative to mu0 u / length, and notes about validity.
+function gaps.evaluate(unit, pole, edges, winding_length)
+  local entry = unit.entry
+  unit.notes, unit.pole = {}, pole
+  unit.shape = { pole = pole, length = unit.length, edges = edges,
+    winding_length = winding_length }
+  local result = core.gap(entry.method, unit.shape)
+  unit.method, unit.fringing, unit.face = entry.method, result.fringing, result.face
+  unit.permeance, unit.by_length = result.permeance, result.permeance_by_length
+  unit.plain_permeance = result.permeance / result.fringing
+  if not result.valid then unit.notes[1] = entry.label .. ": " .. result.note end
+  if entry.permeance then
+    unit.method, unit.permeance = "given", entry.permeance
+    unit.by_length = entry.by_length or -entry.permeance / unit.length
+    unit.fringing = unit.permeance / unit.plain_permeance
+  end
+  unit.centre_field, unit.local_length = 1, unit.length
+  apply_pocket(unit, pole, entry.label)
+end
+
+return gaps
