@@ -38,7 +38,7 @@ SANITIZE_FLAGS = -O1 -g -fno-omit-frame-pointer -fsanitize=address,undefined \
 # The reference BLAS: OpenBLAS keeps memory of its own.
 REFERENCE_BLAS = $(shell for d in /usr/lib/*/blas /usr/lib/*/lapack; do printf '%s:' $$d; done)
 
-.PHONY: demo test test-slow build install bench lint sanitize valgrind clean setup help
+.PHONY: demo test test-slow build install install-lua bench lint sanitize valgrind clean setup help
 
 demo: ## run the worked example, orchard-cart (installs what is missing)
 	@sh tests/tools/setup.sh run build
@@ -75,15 +75,17 @@ $(MODULE): $(BINDING_OBJECTS) $(LIBRARY)
 
 -include $(OBJECTS:.o=.d) $(BINDING_OBJECTS:.o=.d)
 
-install: build ## install below PREFIX (DESTDIR is put before it)
+install-lua: build ## install the Lua library, the command and the recipes below PREFIX
 	cd lua && find entrefer -name '*.lua' -exec install -D -m 644 {} "$(DESTDIR)$(LUADIR)/{}" \;
 	install -D -m 755 $(MODULE) "$(DESTDIR)$(LIBDIR)/entrefer/core.so"
 	install -D -m 755 lua/bin/entrefer "$(DESTDIR)$(BINDIR)/entrefer"
+	for f in recipes/*.lua; do \
+	  install -D -m 644 $$f "$(DESTDIR)$(PREFIX)/share/entrefer/$$f" || exit 1; done
+
+install: install-lua ## install-lua, and the C library with its headers
 	install -D -m 644 $(LIBRARY) "$(DESTDIR)$(PREFIX)/lib/libentrefer.a"
 	for f in $(HEADERS:csrc/%=%); do \
 	  install -D -m 644 csrc/$$f "$(DESTDIR)$(PREFIX)/include/entrefer/$$f" || exit 1; done
-	for f in recipes/*.lua; do \
-	  install -D -m 644 $$f "$(DESTDIR)$(PREFIX)/share/entrefer/$$f" || exit 1; done
 
 bench: build ## time the solvers
 	@for f in tests/bench/*.lua; do echo "$$f"; $(ENVIRONMENT) $(LUA) $$f || exit 1; done

@@ -17,6 +17,7 @@ external_dependencies = { LAPACKE = { header = "lapacke.h" } }
 build = {
   type = "make",
   build_target = "build",
+  install_target = "install-lua",
   build_variables = { CFLAGS = "$(CFLAGS)" },
   install_variables = {
     PREFIX = "$(PREFIX)", LUADIR = "$(LUADIR)", LIBDIR = "$(LIBDIR)", BINDIR = "$(BINDIR)",

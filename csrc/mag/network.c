@@ -173,7 +173,7 @@ static ef_status allocate_numbers(ef_context *context, ef_network *n) {
   n->matrix.size = n->unknowns;
   n->matrix.width = band_width(n);
   size_t band = (n->matrix.width + 1) * n->unknowns;
-  n->number_count = n->laws + n->windings + 3 * n->branches + 7 * n->elements + 4 * n->nodes +
+  n->number_count = n->laws + n->windings + 3 * n->branches + 7 * n->elements + 3 * n->nodes +
                     n->unknowns + n->windings * (n->elements + n->windings) + band;
   n->numbers = ef_allocate(context, n->number_count, sizeof(double));
   if (!n->numbers) return EF_NO_MEMORY;
@@ -193,7 +193,6 @@ static ef_status allocate_numbers(ef_context *context, ef_network *n) {
   n->potential = take(&next, n->nodes);
   n->balance = take(&next, n->nodes);
   n->magnitude = take(&next, n->nodes);
-  n->floor = take(&next, n->nodes);
   n->unknown = take(&next, n->unknowns);
   n->response = take(&next, n->windings * n->elements);
   n->inductance = take(&next, n->windings * n->windings);

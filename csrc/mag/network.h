@@ -65,10 +65,8 @@ typedef struct {
 } ef_network_report;
 
 /* Solves. Converged when the imbalance at every node (and along every chain) is below
- * context->tolerance times the sum of the flux magnitudes there, or below the rounding floor: 4 eps
- * K
- * (|F from| + |F to| + |N I|) over the branches at the node, K their permeance, plus 16 eps of the
- * largest flux at any node (a dead end carries nothing but rounding).
+ * context->tolerance times the sum of the flux magnitudes there, or below the rounding floor of 16
+ * eps times the largest such sum in the network (a dead end carries nothing but rounding).
  * EF_NOT_CONVERGED after context->max_iterations, EF_BAD_VALUE for a current that is not finite.
  * After a failure the network holds no solution and the questions below answer EF_BAD_VALUE. */
 ef_status ef_network_solve(ef_context *context, ef_network *network, const ef_network_input *input,

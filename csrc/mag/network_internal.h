@@ -24,7 +24,7 @@ struct ef_network {
   double *source, *chain_permeance, *chain_flux;           /* branches */
   double *drop, *flux, *density, *field, *tangent, *yield; /* elements */
   double *step;                                            /* elements: change of drop */
-  double *potential, *balance, *magnitude, *floor;         /* nodes */
+  double *potential, *balance, *magnitude;                 /* nodes */
   double *unknown;                                         /* unknowns */
   double *response;   /* windings x elements: d drop / d current */
   double *inductance; /* windings x windings, scratch */

@@ -177,24 +177,18 @@ static void line_search(ef_network *n, int trusting) {
   move(n, share);
 }
 
-/* Sums up each node: flux balance, flux magnitudes, rounding floor. Returns the largest magnitude.
- */
+/* Sums up each node's flux balance and flux magnitudes; returns the largest magnitude. */
 static double sum_up_nodes(ef_network *n) {
   double largest = 0;
   memset(n->balance, 0, n->nodes * sizeof *n->balance);
   memset(n->magnitude, 0, n->nodes * sizeof *n->magnitude);
-  memset(n->floor, 0, n->nodes * sizeof *n->floor);
   for (size_t k = 0; k < n->branches; k++) {
     const ef_branch *b = &n->branch[k];
     double out = n->flux[b->first], in = n->flux[b->first + b->count - 1];
-    double floor = 4 * DBL_EPSILON * n->chain_permeance[k] *
-                   (fabs(n->potential[b->from]) + fabs(n->potential[b->to]) + fabs(n->source[k]));
     n->balance[b->from] -= out;
     n->balance[b->to] += in;
     n->magnitude[b->from] += fabs(out);
     n->magnitude[b->to] += fabs(in);
-    n->floor[b->from] += floor;
-    n->floor[b->to] += floor;
   }
   for (size_t i = 0; i < n->nodes; i++)
     largest = fmax(largest, n->magnitude[i]);
@@ -204,8 +198,7 @@ static double sum_up_nodes(ef_network *n) {
 static int chains_agree(const ef_network *n, double tolerance, double floor) {
   for (size_t k = 0; k < n->branches; k++) {
     const ef_branch *b = &n->branch[k];
-    double out = n->flux[b->first];
-    double limit = tolerance * fabs(out) + floor + n->floor[b->from] + n->floor[b->to];
+    double out = n->flux[b->first], limit = tolerance * fabs(out) + floor;
     for (size_t i = b->first + 1; i < b->first + b->count; i++)
       if (!(fabs(n->flux[i] - out) <= limit)) return 0;
   }
@@ -219,7 +212,7 @@ static double imbalance(ef_network *n, double tolerance, int *met) {
   *met = chains_agree(n, tolerance, floor);
   for (size_t i = 0; i < n->nodes; i++) {
     double off = fabs(n->balance[i]);
-    if (!(off <= tolerance * n->magnitude[i] + n->floor[i] + floor)) *met = 0;
+    if (!(off <= tolerance * n->magnitude[i] + floor)) *met = 0;
     if (n->magnitude[i] > 0) worst = fmax(worst, off / n->magnitude[i]);
   }
   return worst;

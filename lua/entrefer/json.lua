@@ -29,14 +29,21 @@ local encode
 
 local longest_line = 100
 
+-- On one line where it fits, else one part per line.
+local function join(parts, open, close, indent)
+  local line = open .. table.concat(parts, ", ") .. close
+  if #line + #indent <= longest_line and not line:find("\n", 1, true) then return line end
+  local inner = "\n" .. indent .. "  "
+  return open:sub(1, 1) .. inner .. table.concat(parts, "," .. inner) .. "\n" .. indent
+    .. close:sub(-1)
+end
+
 local function encode_array(list, indent, seen)
   local parts, inner, keys = {}, indent .. "  ", 0
   for _ in pairs(list) do keys = keys + 1 end
   if keys ~= #list then fail.text("record", "a list of the record has holes or named fields too") end
   for i = 1, #list do parts[i] = encode(list[i], inner, seen) end
-  local line = "[" .. table.concat(parts, ", ") .. "]"
-  if #line + #indent <= longest_line and not line:find("\n", 1, true) then return line end
-  return "[\n" .. inner .. table.concat(parts, ",\n" .. inner) .. "\n" .. indent .. "]"
+  return join(parts, "[", "]", indent)
 end
 
 local function encode_record(record, indent, seen)
@@ -48,9 +55,9 @@ local function encode_record(record, indent, seen)
   if #keys == 0 then return "{}" end
   table.sort(keys)
   for i, key in ipairs(keys) do
-    keys[i] = inner .. text_of(key) .. ": " .. encode(record[key], inner, seen)
+    keys[i] = text_of(key) .. ": " .. encode(record[key], inner, seen)
   end
-  return "{\n" .. table.concat(keys, ",\n") .. "\n" .. indent .. "}"
+  return join(keys, "{ ", " }", indent)
 end
 
 function encode(value, indent, seen)

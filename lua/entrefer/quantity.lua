@@ -96,7 +96,12 @@ local steps = { { 1e9, "G" }, { 1e6, "M" }, { 1e3, "k" }, { 1, "" }, { 1e-3, "m"
 function quantity.format(value, unit, digits, options)
   digits = digits or 4
   local ascii = options and options.ascii
-  if unit == "1" or unit == nil then return number.significant(value, digits) end
+  if type(value) ~= "number" or value - value ~= 0 then fail("value", value, "a finite number") end
+  if unit == "1" or unit == nil then
+    -- A count is shown as one.
+    if value % 1 == 0 then return number.exact(value) end
+    return number.significant(value, digits)
+  end
   if unit == "degC" then
     return number.rounded(value, digits) .. (ascii and " degC" or " \u{B0}C")
   end

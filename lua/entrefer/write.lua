@@ -138,11 +138,16 @@ function made:markdown()
   return table.concat(out, "\n") .. "\n"
 end
 
--- RFC 4180; text that a spreadsheet would take for a formula gets an apostrophe in front.
+-- RFC 4180; text that a spreadsheet would take for a formula gets an apostrophe in front. A signed
+-- number or percentage is none.
+local function is_formula(text)
+  return text:match("^[=+%-@\t\r]") and not text:match("^[+-]%d+%.?%d*%s?%%?$")
+end
+
 local function escape_csv(value)
   if type(value) == "number" then return number.rounded(value, record_digits) end
   local text = value == nil and "" or tostring(value)
-  if text:match("^[=+%-@\t\r]") then text = "'" .. text end
+  if is_formula(text) then text = "'" .. text end
   if text:find('[",\r\n]') then text = '"' .. text:gsub('"', '""') .. '"' end
   return text
 end
