@@ -10,7 +10,7 @@ return {
   material = "PW3b",
   cores = { { shape = "ring", name = "ring 38/26/8", dimensions = { d1 = "38 mm", d2 = "26 mm",
     h = "8 mm" } } },
-  limits = { saturation_share = 0.8, nonlinearity = "2 %" },
+  limits = { saturation_share = 0.9, nonlinearity = "2 %" },
   sensing = { clearance = "1.2 mm", stacked = 2, range_use = { 0.15, 0.9 } },
   gap = { length = "4.5 mm", count = 1 },
   sweep = { to = "600 A", points = 13 },

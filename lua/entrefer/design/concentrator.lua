@@ -81,21 +81,24 @@ local function variants(req, core)
 end
 
 local function lines_for(req, item, rules)
+  local function line(key, name, value, limit, unit, sense)
+    return verdict.line(key, name, value, limit, unit, sense, "concentrator")
+  end
   local lines = {
-    verdict.line("flux_density", "flux density of the ring at the trip current, hot",
+    line("flux_density", "flux density of the ring at the trip current, hot",
       item.facts.core_trip, req.flux_density_limit, "T", "at most"),
-    verdict.line("nonlinearity", "shortfall of the reading at the trip current, hot",
+    line("nonlinearity", "shortfall of the reading at the trip current, hot",
       math.max(item.shortfall, 0), req.limits.nonlinearity, "1", "at most"),
   }
-  if item.chosen then
-    local sensor = item.chosen.sensor
-    lines[#lines + 1] = verdict.line("height", "clear height for the sensors", item.facts.height,
-      sensing.height(sensor, rules), "m", "at least")
-    lines[#lines + 1] = verdict.line("range", "flux density at the sensor, trip current",
-      item.facts.trip, rules.most_use * sensor.range, "T", "at most")
-  else
-    lines[#lines + 1] = verdict.line("signal", "sensors that fit", 0, 1, "1", "at least")
+  if not item.chosen then
+    lines[#lines + 1] = line("signal", "sensors that fit", 0, 1, "1", "at least")
+    return lines
   end
+  local sensor = item.chosen.sensor
+  lines[#lines + 1] = line("height", "clear height for the sensors", item.facts.height,
+    sensing.height(sensor, rules), "m", "at least")
+  lines[#lines + 1] = line("range", "flux density at the sensor, trip current", item.facts.trip,
+    rules.most_use * sensor.range, "T", "at most")
   return lines
 end
 

@@ -16,17 +16,29 @@ local change = {
   turns = "a larger core, or a higher allowed flux density",
 }
 
+-- A concentrator has one turn and a gap set by its sensors: a shorter gap only saturates it sooner.
+local change_of_concentrator = {
+  flux_density = "two gaps with a sensor in each, a thicker section, or a material with a higher"
+    .. " saturation; not a shorter gap",
+  height = "a thinner package, or a longer gap",
+  range = "a sensor with a larger range, or a longer gap",
+  signal = "another sensor class, or more turns",
+}
+change_of_concentrator.nonlinearity = change_of_concentrator.flux_density
+
 --- One line of the verdict.
 -- @string key of the limit
 -- @string name what is limited
 -- @number value, limit in the unit
 -- @string unit
 -- @string sense "at least" or "at most"
+-- @string[opt="inductor"] kind "inductor" or "concentrator": what can be changed
 -- @treturn table `{ key, name, value, limit, unit, sense, passed, margin (share of the limit), change }`
-function verdict.line(key, name, value, limit, unit, sense)
+function verdict.line(key, name, value, limit, unit, sense, kind)
   local margin = sense == "at least" and value / limit - 1 or 1 - value / limit
+  local advice = kind == "concentrator" and change_of_concentrator or change
   return { key = key, name = name, value = value, limit = limit, unit = unit, sense = sense,
-    passed = margin >= 0, margin = margin, change = change[key] }
+    passed = margin >= 0, margin = margin, change = advice[key] or change[key] }
 end
 
 --- Puts lines together.
