@@ -7,6 +7,8 @@ BINDIR ?= $(PREFIX)/bin
 
 BUILD ?= build
 LUA ?= /usr/bin/lua5.4
+# `SETUP=:` where the packages are installed by other means.
+SETUP ?= sh tests/tools/setup.sh
 CC ?= cc
 CFLAGS ?= -O2
 STRICT ?= $(CI)
@@ -41,14 +43,14 @@ REFERENCE_BLAS = $(shell for d in /usr/lib/*/blas /usr/lib/*/lapack; do printf '
 .PHONY: demo test test-slow build install install-lua bench lint sanitize valgrind clean setup help
 
 demo: ## run the worked example, orchard-cart (installs what is missing)
-	@sh tests/tools/setup.sh run build
+	@$(SETUP) run build
 	@$(MAKE) --no-print-directory build
 	@mkdir -p build/demo/orchard-cart
 	@$(ENVIRONMENT) $(LUA) lua/bin/entrefer run recipes/part-from-spec.lua \
 	  spec=examples/orchard-cart/spec.lua --out build/demo/orchard-cart
 
 test: ## build and run all but the slow tests (installs what is missing)
-	@sh tests/tools/setup.sh run build test
+	@$(SETUP) run build test
 	@$(MAKE) --no-print-directory build
 	$(BUSTED)
 
@@ -91,8 +93,8 @@ bench: build ## time the solvers
 	@for f in tests/bench/*.lua; do echo "$$f"; $(ENVIRONMENT) $(LUA) $$f || exit 1; done
 
 lint: ## luacheck, clang-tidy and clang-format, any warning fails
-	@sh tests/tools/setup.sh run build lint
-	luacheck --quiet lua recipes examples tests lua/bin/entrefer
+	@$(SETUP) run build lint
+	luacheck --quiet --no-color lua recipes examples tests lua/bin/entrefer
 	clang-format --dry-run -Werror csrc/*.h csrc/*/*.[ch]
 	clang-tidy --quiet csrc/*/*.c -- -std=c11 $(PACKAGE_FLAGS)
 
@@ -100,13 +102,13 @@ lint: ## luacheck, clang-tidy and clang-format, any warning fails
 # looked for when it has closed its state; nothing is suppressed.
 sanitize: BUILD = build/sanitize
 sanitize: ## run the tests with the address, leak and undefined-behaviour sanitizers
-	@sh tests/tools/setup.sh run build test
+	@$(SETUP) run build test
 	@$(MAKE) --no-print-directory build BUILD=$(BUILD) CFLAGS="$(SANITIZE_FLAGS)"
 	$(ENVIRONMENT) LD_LIBRARY_PATH="$(REFERENCE_BLAS)" ASAN_OPTIONS=detect_leaks=1 \
 	  LD_PRELOAD=$$($(CC) -print-file-name=libasan.so) $(UNDER_LUA)
 
 valgrind: ## run the tests under valgrind (slow)
-	@sh tests/tools/setup.sh run build test lint
+	@$(SETUP) run build test lint
 	@$(MAKE) --no-print-directory build
 	$(ENVIRONMENT) LD_LIBRARY_PATH="$(REFERENCE_BLAS)" valgrind --quiet --error-exitcode=1 \
 	  --leak-check=full --errors-for-leak-kinds=definite $(UNDER_LUA)
@@ -115,7 +117,7 @@ clean: ## remove everything built
 	rm -rf build
 
 setup: ## install the packages for running, building, testing and linting
-	@sh tests/tools/setup.sh run build test lint
+	@$(SETUP) run build test lint
 
 help: ## print this list
 	@grep -hE '^[a-z-]+:.*## ' $(MAKEFILE_LIST) | sed 's/:.*## /\t/' | expand -t 14

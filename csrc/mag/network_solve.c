@@ -249,6 +249,9 @@ ef_status ef_network_solve(ef_context *context, ef_network *n, const ef_network_
   }
   evaluate(n);
   for (int i = 0; i <= context->max_iterations; i++) {
+    if (context->progress &&
+        context->progress(context->progress_user, (double)i / context->max_iterations))
+      return ef_fail_message(context, EF_CANCELLED, "network", "the solution was cancelled");
     /* The first full step makes the start fit the sources; from there every step is a descent. */
     status = newton_step(context, n, i == 0);
     if (status != EF_OK) return status;

@@ -11,10 +11,10 @@ local quantity = require "entrefer.quantity"
 local material = {}
 
 local card_fields = { "name", "kind", "group", "description", "curves", "points", "temperature",
-  "initial_permeability", "saturation", "coercive_field", "resistivity", "density",
+  "initial_permeability", "saturation", "coercive_field", "remanence", "resistivity", "density",
   "curie_temperature", "uncertainty", "note", "source", "file" }
-local curve_fields = { "temperature", "initial_permeability", "saturation", "coercive_field", "h",
-  "b" }
+local curve_fields = { "temperature", "initial_permeability", "saturation", "coercive_field",
+  "remanence", "h", "b" }
 local kinds = { "linear", "froelich", "langevin", "curve" }
 
 local methods = {}
@@ -42,6 +42,7 @@ local function read_curve(curve, kind, label)
       label .. " initial permeability", { min = 1 }),
     saturation = optional(curve.saturation, "T", label .. " saturation", { positive = true }),
     coercive_field = optional(curve.coercive_field, "A/m", label .. " coercive field", { min = 0 }),
+    remanence = optional(curve.remanence, "T", label .. " remanence", { min = 0 }),
   }
   if kind == "curve" then
     read.h = read_list(curve.h, "A/m", label .. " field strength")
@@ -63,8 +64,8 @@ local function curve_list(spec)
   if spec.curves then return spec.curves, kind end
   local points = spec.points or {}
   return { { temperature = spec.temperature, initial_permeability = spec.initial_permeability,
-    saturation = spec.saturation, coercive_field = spec.coercive_field, h = points.h,
-    b = points.b } }, kind
+    saturation = spec.saturation, coercive_field = spec.coercive_field,
+    remanence = spec.remanence, h = points.h, b = points.b } }, kind
 end
 
 local function build(spec)
@@ -78,6 +79,7 @@ local function build(spec)
     curves[i] = read_curve(curve, kind, #list > 1 and "material curve " .. i or "material")
     if spec.file then
       curves[i].coercive_field = optional(spec.coercive_field, "A/m", "material coercive field")
+      curves[i].remanence = optional(spec.remanence, "T", "material remanence")
     end
   end
   return make {
@@ -115,7 +117,7 @@ end
 -- @tparam string|table spec the name of a card ("PW3b"), a path to a CSV file of digitised points
 --   (ends in ".csv", see `entrefer.curve_file`), or a table: `name`; `kind` = "curve", "froelich",
 --   "langevin" or "linear"; `curves` = list of `{ temperature (degC), initial_permeability, saturation
---   (T), coercive_field (A/m), h (list, A/m), b (list, T) }`, or the fields of one curve directly;
+--   (T), coercive_field (A/m), remanence (T), h (list, A/m), b (list, T) }`, or the fields of one curve directly;
 --   or `file` with the fields that a file doesn't hold; `resistivity` (ohm m), `density` (kg/m3),
 --   `curie_temperature` (degC), `uncertainty`, `note`, `source`
 -- @treturn material
@@ -171,19 +173,28 @@ function methods:law(temperature)
   return law
 end
 
---- Coercive field at a temperature, A/m, linear between the curves; nil when not given.
-function methods:coercive_field_at(temperature)
-  local curves = fields_of(self).curves
+-- A figure of the curves at a temperature, linear between them, held outside; nil when not given.
+local function between_curves(curves, name, temperature)
   local first, last = curves[1], curves[#curves]
-  if temperature <= first.temperature then return first.coercive_field end
-  if temperature >= last.temperature then return last.coercive_field end
+  if temperature <= first.temperature then return first[name] end
+  if temperature >= last.temperature then return last[name] end
   for i = 2, #curves do
     local a, b = curves[i - 1], curves[i]
-    if temperature <= b.temperature and a.coercive_field and b.coercive_field then
+    if temperature <= b.temperature and a[name] and b[name] then
       local share = (temperature - a.temperature) / (b.temperature - a.temperature)
-      return a.coercive_field + share * (b.coercive_field - a.coercive_field)
+      return a[name] + share * (b[name] - a[name])
     end
   end
+end
+
+--- Coercive field at a temperature (degC), A/m; nil when not given.
+function methods:coercive_field_at(temperature)
+  return between_curves(fields_of(self).curves, "coercive_field", temperature)
+end
+
+--- Remanent flux density of a closed core at a temperature (degC), T; nil when not given.
+function methods:remanence_at(temperature)
+  return between_curves(fields_of(self).curves, "remanence", temperature)
 end
 
 --- Flux density (T) at a field strength (A/m) and temperature (degC).

@@ -39,10 +39,15 @@ function number.significant(value, digits)
   return tidy(("%." .. digits - 1 - exponent .. "f"):format(value))
 end
 
+--- The nearest number with so many significant digits, as a number.
+function number.round(value, digits)
+  return tonumber((("%." .. digits - 1 .. "e"):format(check(value)):gsub(",", ".")))
+end
+
 --- At most so many significant digits, without trailing zeros; integers (Lua's kind) stay whole.
 function number.rounded(value, digits)
   if math.type(value) == "integer" then return number.exact(value) end
-  return number.exact(tonumber(("%." .. digits .. "g"):format(check(value))))
+  return number.exact(number.round(value, digits))
 end
 
 --- The shortest text that reads back as the same number.

@@ -115,7 +115,8 @@ end
 --   `windings`: list of `{ turns, leg, wire, span = { from, to } (m), reverse, name; on a ring angle
 --   and extent (rad) }`: positive current in any winding aids winding 1 unless `reverse`;
 --   `bobbin` = { wall, clearance, flange } (m; default 0.8, 0.2, 0.8 mm); `name`, `note`
--- @treturn part with `core`, `material`, `gap_entries`, `windings`, `fill` (share of the window)
+-- @treturn part with `core`, `material`, `gap_entries`, `windings`, `fill` (share of the window),
+--   `core_mass` (kg, when the material gives its density)
 -- @raise an error table naming the field: unknown legs, a gap longer than its leg, a build that does
 --   not fit the window...
 function part.new(spec)
@@ -140,6 +141,8 @@ function part.new(spec)
   self.limbs, self.positions, self.branches = net.limbs, net.positions, net.branches
   self.plain = estimate.prepare(self)
   self.notes, self.method = collect_notes(self)
+  local volume, density = self.core.geometry.iron_volume, self.material.density
+  self.core_mass = volume and density and volume * density
   return make(self)
 end
 

@@ -109,7 +109,7 @@ function quantity.format(value, unit, digits, options)
     return (value == 0 and "0" or number.significant(value, digits)) .. " " .. unit
   end
   -- Rounded first, so that 999.96 with four digits becomes 1.000 k and not 1000.
-  local rounded = tonumber(("%." .. digits - 1 .. "e"):format(value))
+  local rounded = number.round(value, digits)
   local chosen = steps[#steps]
   for _, step in ipairs(steps) do
     if math.abs(rounded) >= step[1] * (1 - 1e-12) then

@@ -17,7 +17,6 @@ liblua5.4-dev|build|Lua's headers, for the binding
 liblapacke-dev|build|LAPACKE's headers
 lua-busted|test|the test runner
 lua-cjson|test|reads the JSON that the library writes
-lua-penlight|test|used by the test runner
 lua-check|lint|the Lua linter
 clang-tidy|lint|the C linter
 clang-format|lint|checks the layout of the C files
@@ -41,8 +40,8 @@ wanted() {
 explain() { while IFS='|' read -r package reason; do printf '  %-18s %s\n' "$package" "$reason"; done; }
 
 if ! command -v dpkg-query >/dev/null || ! command -v apt-get >/dev/null; then
-  echo "This system has no apt-get. Please install what matches these Debian packages, then run" >&2
-  echo "'make build' and the step you want, which need no setup:" >&2
+  echo "This system has no apt-get. Please install what matches these Debian packages, then say so" >&2
+  echo "with SETUP=: behind the make command, as in 'make test SETUP=:'." >&2
   wanted "$@" | explain >&2
   exit 1
 fi
@@ -67,4 +66,4 @@ names=$(echo "$missing" | cut -d'|' -f1)
 $as_root apt-get -qq update
 # The package names are meant to be split.
 # shellcheck disable=SC2086
-$as_root env DEBIAN_FRONTEND=noninteractive apt-get -qq -y --no-install-recommends install $names
+$as_root env DEBIAN_FRONTEND=noninteractive apt-get -qq -y --no-install-recommends install $names >/dev/null

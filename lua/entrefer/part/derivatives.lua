@@ -28,7 +28,7 @@ local function with_gap(part, fields, index, length)
   return part:with { gaps = list }
 end
 
-local element_parameters = { "length", "area", "bypass", "permeance" }
+local element_parameters = { "length", "area", "bypass", "permeance", "by_length" }
 
 local function compare_elements(lower, upper, step)
   local changes, above = {}, {}
@@ -115,14 +115,20 @@ local function direction(object, part, by)
 end
 
 -- Flux density in the middle of a gap: mu0 u k / length; k, the field in a pocket or a ring's gap
--- relative to the plain one, is held.
-local function gap_record(part, index, raw, by)
+-- relative to the plain one, is held. Force: -u^2/2 dP/dlength.
+local function gap_record(part, index, raw, by, way)
   local unit = part.gap_entries[index].units[1]
-  local drop = part.solver:element(unit.element)
+  local drop, _, _, _, force = part.solver:element(unit.element)
   local factor = core.mu0 * unit.centre_field / unit.length
-  local change = factor * raw.drop[unit.element]
-  if by.gap == index then change = change - factor * drop / unit.length end
-  return { centre_flux_density = change, flux = raw.flux[unit.element] }
+  local record = {
+    centre_flux_density = factor * raw.drop[unit.element], flux = raw.flux[unit.element],
+    force = drop ~= 0 and 2 * force / drop * raw.drop[unit.element] or 0,
+  }
+  if by.gap == index then
+    record.centre_flux_density = record.centre_flux_density - factor * drop / unit.length
+    record.force = record.force - drop ^ 2 / 2 * way.elements[unit.element].by_length
+  end
+  return record
 end
 
 --- Derivatives at an operating point.
@@ -133,7 +139,7 @@ end
 --   held: per 1)
 -- @treturn table derivative of `flux_linkage`, `incremental_inductance` (numbers for one winding,
 --   else lists / row-major list), `inductance` (one winding), `energy`, `coenergy`,
---   `limbs[name].flux_density`, `gaps[i].centre_flux_density` and `.flux`
+--   `limbs[name].flux_density`, `gaps[i].centre_flux_density`, `.flux` and `.force`
 function derivatives.at(object, part, at)
   fail.fields(at, { "current", "temperature", "by" }, "derivatives")
   local by = at.by
@@ -155,7 +161,7 @@ function derivatives.at(object, part, at)
     local _, where = part.solver:span(limb.first, limb.last)
     result.limbs[limb.name] = { flux_density = raw.flux_density[where] }
   end
-  for i = 1, #part.gap_entries do result.gaps[i] = gap_record(part, i, raw, by) end
+  for i = 1, #part.gap_entries do result.gaps[i] = gap_record(part, i, raw, by, way) end
   return result
 end
 

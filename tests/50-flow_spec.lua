@@ -1,0 +1,287 @@
+-- The first flow, through the command line, on the example projects.
+local cjson = require "cjson"
+local ef = require "entrefer"
+local lfs = require "lfs"
+local support = require "tests.support"
+local near = support.near
+
+local lua = "/usr/bin/lua5.4"
+
+-- Records are rounded to six digits, so that a last digit of a maths library does not show.
+local six_digits = 5e-6
+
+local function read(path)
+  local file = assert(io.open(path, "rb"))
+  local text = file:read("a")
+  file:close()
+  return text
+end
+
+local function write(path, text)
+  local file = assert(io.open(path, "wb"))
+  file:write(text)
+  file:close()
+end
+
+local function fresh_folder()
+  local name = os.tmpname()
+  os.remove(name)
+  assert(lfs.mkdir(name))
+  return name
+end
+
+local function remove_folder(folder)
+  for entry in lfs.dir(folder) do
+    local path = folder .. "/" .. entry
+    if entry ~= "." and entry ~= ".." then
+      if lfs.attributes(path, "mode") == "directory" then remove_folder(path) else os.remove(path) end
+    end
+  end
+  lfs.rmdir(folder)
+end
+
+-- Runs the command; returns exit code, standard output, standard error.
+local function entrefer(arguments, prefix)
+  local out, err = os.tmpname(), os.tmpname()
+  local _, _, code = os.execute(("%s %s lua/bin/entrefer %s >%s 2>%s"):format(prefix or "", lua,
+    arguments, out, err))
+  local texts = { read(out), read(err) }
+  os.remove(out)
+  os.remove(err)
+  return code, texts[1], texts[2]
+end
+
+local function run_example(name, folder)
+  local code, out, err = entrefer(("run part-from-spec spec=examples/%s/spec.lua --out %s"):format(
+    name, folder))
+  assert.equal(0, code, err)
+  return out, cjson.decode(read(folder .. "/results.json"))
+end
+
+-- RFC 4180 reader: records of cells.
+local function parse_csv(text)
+  local rows, row, at = {}, {}, 1
+  while at <= #text do
+    local cell
+    if text:sub(at, at) == '"' then
+      local stop = at + 1
+      repeat
+        stop = text:find('"', stop, true)
+        local doubled = text:sub(stop + 1, stop + 1) == '"'
+        stop = doubled and stop + 2 or stop
+      until not doubled
+      cell, at = text:sub(at + 1, stop - 1):gsub('""', '"'), stop + 1
+    else
+      local stop = text:find("[,\r]", at)
+      cell, at = text:sub(at, stop - 1), stop
+    end
+    row[#row + 1] = cell
+    if text:sub(at, at) == "," then
+      at = at + 1
+    else
+      assert(text:sub(at, at + 1) == "\r\n", "a record ends with CR LF")
+      rows[#rows + 1], row, at = row, {}, at + 2
+    end
+  end
+  return rows
+end
+
+describe("the orchard-cart project", function()
+  local folder, out, results
+  setup(function()
+    folder = fresh_folder()
+    out, results = run_example("orchard-cart", folder)
+  end)
+  teardown(function() remove_folder(folder) end)
+
+  it("opens with its verdict and passes", function()
+    assert.is_truthy(out:find("Verdict\n%-+\nOrchard cart[^\n]*PASS"))
+    assert.equal("pass", results.passed)
+    assert.is_truthy(out:find("First limit to break", 1, true))
+    assert.is_truthy(out:find("CAUTION", 1, true))
+  end)
+
+  it("gives the results that stand in the project", function()
+    local expected = cjson.decode(read("examples/orchard-cart/expected.json"))
+    for name, value in pairs(expected) do
+      if type(value) == "number" then
+        -- Six digits in both; a unit in the last of them.
+        near(value, results[name], 2 * six_digits, name)
+      else
+        assert.equal(value, results[name])
+      end
+    end
+  end)
+
+  it("keeps every limit by the numbers themselves", function()
+    -- Worked again from the spec, not from the flow: L = (Vh - Vl) Vl / Vh / (f dI).
+    local wanted = (57 - 25) * 25 / 57 / (110e3 * 17)
+    local part = ef.part {
+      core = results.core,
+      material = { file = "examples/orchard-cart/power-ferrite.csv" },
+      gaps = { { length = results.gap } }, windings = { { turns = results.turns } },
+    }
+    local peak = part:solve { current = 47, temperature = 100 }
+    local trip = part:solve { current = 58, temperature = 100 }
+    near(results.inductance, peak.inductance, six_digits)
+    assert.is_true(peak.inductance >= wanted)
+    assert.is_true(trip.core_flux_density <= 0.8 * part.material:saturation(100))
+    -- One step of the gap less and the flux density rises, one more and the inductance is short.
+    assert.is_true(part:with { gap = results.gap + 0.05e-3 }
+      :solve { current = 47, temperature = 100 }.inductance < wanted)
+  end)
+
+  it("writes the same table as text, Markdown, CSV and JSON", function()
+    local csv = parse_csv(read(folder .. "/against-current.csv"))
+    local json = cjson.decode(read(folder .. "/against-current.json"))
+    local text = read(folder .. "/against-current.txt")
+    local markdown = read(folder .. "/against-current.md")
+    assert.equal(3 * 16 + 1, #csv)
+    assert.equal(#csv - 1, #json.rows)
+    assert.equal("temperature [degC]", csv[1][1])
+    for i, row in ipairs(json.rows) do
+      for k, value in ipairs(row) do
+        if type(value) == "number" then assert.equal(value, tonumber(csv[i + 1][k])) end
+      end
+    end
+    local _, lines = text:gsub("\n", "")
+    assert.is_true(lines >= #csv + 1)
+    local _, bars = markdown:gsub("\n|", "")
+    assert.equal(#csv, bars)
+  end)
+
+  it("has a table that the library gives point by point", function()
+    local csv = parse_csv(read(folder .. "/against-current.csv"))
+    local part = ef.part { core = results.core,
+      material = { file = "examples/orchard-cart/power-ferrite.csv" },
+      gaps = { { length = results.gap } }, windings = { { turns = results.turns } } }
+    local probe = ef.probe { part = part, sensor = results.sensor }
+    for _, i in ipairs { 5, 20, 30, 49 } do
+      local temperature, current = tonumber(csv[i][1]), tonumber(csv[i][2])
+      local s = part:solve { current = current, temperature = temperature }
+      -- The sweep starts each point from the one before: the same minimum to the solver's tolerance.
+      near(s.inductance * 1e6, tonumber(csv[i][3]), six_digits)
+      near(probe:read { current = current, temperature = temperature }.voltage, tonumber(csv[i][8]),
+        six_digits)
+    end
+  end)
+
+  it("is the same to the byte in another folder and under another locale", function()
+    local other = fresh_folder()
+    local code = entrefer("run part-from-spec spec=examples/orchard-cart/spec.lua --out " .. other,
+      "LC_ALL=de_DE.UTF-8 TZ=Asia/Tokyo")
+    assert.equal(0, code)
+    for entry in lfs.dir(folder) do
+      if entry ~= "." and entry ~= ".." then
+        assert.equal(read(folder .. "/" .. entry), read(other .. "/" .. entry), entry)
+      end
+    end
+    remove_folder(other)
+  end)
+
+  it("leaves no temporary file behind", function()
+    for entry in lfs.dir(folder) do assert.is_nil(entry:match("%.part$")) end
+  end)
+end)
+
+describe("the canal-barge project", function()
+  it("fails as asked, says why, and finds two gaps", function()
+    local folder = fresh_folder()
+    local out, results = run_example("canal-barge", folder)
+    assert.equal("fail", results.passed)
+    assert.equal("two gaps, a sensor in each", results.recommended)
+    assert.is_truthy(out:find("180 degrees from the gap", 1, true))
+    -- A shorter gap saturates the ring sooner: the wrong reflex is shown as such.
+    local rows = cjson.decode(read(folder .. "/arrangements.json")).rows
+    local as_asked, half = rows[1], rows[4]
+    assert.is_true(tonumber(half[7]) < tonumber(as_asked[7]))
+    remove_folder(folder)
+  end)
+end)
+
+describe("the duct-robot project", function()
+  it("takes a pocket where the gap is shorter than the package", function()
+    local folder = fresh_folder()
+    local out, results = run_example("duct-robot", folder)
+    assert.equal("pass", results.passed)
+    assert.is_truthy(out:find("with a pocket of", 1, true))
+    local sensor = ef.sensor(results.sensor)
+    assert.is_true(results.gap < sensor.thickness.min + 0.4e-3)
+    remove_folder(folder)
+  end)
+end)
+
+describe("the command", function()
+  it("lists and describes recipes", function()
+    local code, out = entrefer("list")
+    assert.equal(0, code)
+    assert.is_truthy(out:find("part-from-spec", 1, true))
+    local described, text = entrefer("describe part-from-spec")
+    assert.equal(0, described)
+    assert.is_truthy(text:find("spec", 1, true) and text:find("inductance", 1, true))
+  end)
+
+  local function refuses(arguments, expected_code, pattern)
+    local code, out, err = entrefer(arguments)
+    assert.equal(expected_code, code, out .. err)
+    assert.is_truthy(err:find(pattern), err)
+    assert.is_nil(err:find("traceback", 1, true))
+  end
+
+  it("says in one line what is wrong", function()
+    refuses("", 2, "entrefer: ")
+    refuses("runn x", 2, "entrefer: ")
+    refuses("run nowhere", 1, "there is no recipe nowhere")
+    refuses("run part-from-spec", 1, "spec is missing")
+    refuses("run part-from-spec spec=/nonexistent.lua", 1, "can't be read")
+    refuses("run part-from-spec spec", 1, "name=value")
+    refuses("run part-from-spec spec=examples/orchard-cart/spec.lua colour=red", 1, "unknown")
+    refuses("run part-from-spec spec=README.md", 1, "README.md")
+  end)
+
+  local function with_spec(text, pattern)
+    local folder = fresh_folder()
+    write(folder .. "/spec.lua", text)
+    local out_folder = folder .. "/out"
+    local code, _, err = entrefer(("run part-from-spec spec=%s/spec.lua --out %s"):format(folder,
+      out_folder))
+    assert.equal(1, code)
+    assert.is_truthy(err:find(pattern), err)
+    assert.is_nil(lfs.attributes(out_folder), "nothing is written after a refusal")
+    remove_folder(folder)
+  end
+
+  it("refuses bad specs by field and writes nothing", function()
+    local good = 'current = { nominal = "3 A" }, inductance = "100 uH", material = "PW3b",'
+      .. ' cores = { "E 25/13/7" }'
+    with_spec("return 5", "table")
+    with_spec("return {", "spec.lua")
+    with_spec("while true do end", "too long")
+    with_spec('return { os.execute("true") }', "os")
+    with_spec("return { " .. good .. ', colour = "red" }', "colour")
+    with_spec("return { " .. good:gsub('"100 uH"', '"100 V"') .. " }", "inductance")
+    with_spec("return { " .. good:gsub('"3 A"', '"-3 A"') .. " }", "current nominal")
+    with_spec("return { " .. good:gsub("PW3b", "PW33") .. " }", "PW3b")
+    with_spec("return { " .. good:gsub("E 25/13/7", "E 25/13/8") .. " }", "E 25/13/7")
+    with_spec("return { " .. good:gsub('inductance = "100 uH",', "") .. " }", "inductance is missing")
+    with_spec('return { current = { nominal = "3 A", peak = "2 A" }, inductance = 1e-4,'
+      .. ' material = "PW3b", cores = { "E 25/13/7" } }', "current peak")
+    with_spec('return { current = { nominal = "3 A" }, converter = { high = "12 V", low = "24 V",'
+      .. ' frequency = "1 MHz", ripple = "1 A" }, material = "PW3b", cores = { "E 25/13/7" } }',
+      "converter low")
+    with_spec('return { kind = "concentrator", current = { nominal = "3 A" }, material = "PW3b",'
+      .. ' cores = { "E 25/13/7" } }', "ring")
+  end)
+
+  it("says when no core can do it, with the reason for each", function()
+    local folder = fresh_folder()
+    write(folder .. "/spec.lua", 'return { current = { nominal = "50 A" }, inductance = "1 mH",'
+      .. ' material = "PW3b", cores = { "E 25/13/7", "RM 8" } }')
+    local code, out = entrefer(("run part-from-spec spec=%s/spec.lua"):format(folder))
+    assert.equal(0, code)
+    assert.is_truthy(out:find("FAIL", 1, true))
+    assert.is_truthy(out:find("Cores refused", 1, true))
+    assert.is_truthy(out:find("RM 8", 1, true))
+    remove_folder(folder)
+  end)
+end)
