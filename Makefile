@@ -40,6 +40,7 @@ SANITIZE_FLAGS = -O1 -g -fno-omit-frame-pointer -fsanitize=address,undefined \
 # The reference BLAS: OpenBLAS keeps memory of its own.
 REFERENCE_BLAS = $(shell for d in /usr/lib/*/blas /usr/lib/*/lapack; do printf '%s:' $$d; done)
 
+.DEFAULT_GOAL = help
 .PHONY: demo test test-slow build install install-lua bench lint sanitize valgrind clean setup help
 
 demo: ## run the worked example, orchard-cart (installs what is missing)

@@ -68,7 +68,8 @@ typedef struct {
  * context->tolerance times the sum of the flux magnitudes there, or below the rounding floor of 16
  * eps times the largest such sum in the network (a dead end carries nothing but rounding).
  * EF_NOT_CONVERGED after context->max_iterations, EF_CANCELLED by context->progress (called before
- * each step), EF_BAD_VALUE for a current that is not finite. After a failure the network holds no solution and the questions below answer EF_BAD_VALUE. */
+ * each step), EF_BAD_VALUE for a current that is not finite. After a failure the network holds no
+ * solution and the questions below answer EF_BAD_VALUE. */
 ef_status ef_network_solve(ef_context *context, ef_network *network, const ef_network_input *input,
                            ef_network_report *report);
 

@@ -1,5 +1,4 @@
-/* The network's inside, shared by network.c, network_solve.c, network_result.c and
- * network_sensitivity.c only. */
+/* The network's inside, shared by network*.c only. */
 #ifndef EF_MAG_NETWORK_INTERNAL_H
 #define EF_MAG_NETWORK_INTERNAL_H
 
@@ -38,6 +37,10 @@ struct ef_network {
 /* Flux, flux density and tangent of one element at the drop u. */
 void ef_element_at(ef_network *n, size_t element, double drop, double *flux, double *density,
                    double *tangent);
+
+/* Flux / drop at the operating point; where the drop vanishes the tangent is its limit. With
+ * remanence the drop is taken from the point where the iron is at rest (H + Hc). */
+double ef_element_secant(const ef_network *n, size_t element);
 
 /* Coenergy of one element at its present drop, J. */
 double ef_element_coenergy(const ef_network *n, size_t element);

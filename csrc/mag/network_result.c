@@ -54,18 +54,6 @@ double ef_network_linkage(const ef_network *n, size_t winding) {
   return sum;
 }
 
-/* Flux / drop at the operating point; where the drop vanishes the tangent is its limit. With
- * remanence the drop is taken from the point where the iron is at rest (H + Hc). */
-static double secant_permeance(const ef_network *n, size_t i) {
-  const ef_element *e = &n->element[i];
-  if (e->law == EF_NO_LAW) return e->permeance;
-  double h = n->drop[i] / e->length + n->offset[e->law] * e->remanence;
-  size_t hint = n->hint[i];
-  ef_law_point p = ef_law_at(&n->law[e->law], h, &hint);
-  double slope = h != 0 ? p.polarisation / h : p.slope;
-  return e->area / e->length * (EF_MU0 + slope) + e->bypass;
-}
-
 static ef_status prepare(ef_context *context, ef_network *n, ef_factor_kind kind) {
   ef_status status = require_solution(context, n);
   if (status != EF_OK || n->factored == kind) return status;
@@ -73,7 +61,7 @@ static ef_status prepare(ef_context *context, ef_network *n, ef_factor_kind kind
     ef_network_condense(n, n->tangent);
   } else {
     for (size_t i = 0; i < n->elements; i++)
-      n->step[i] = secant_permeance(n, i);
+      n->step[i] = ef_element_secant(n, i);
     ef_network_condense(n, n->step);
   }
   return ef_network_factor(context, n, kind);
@@ -108,17 +96,6 @@ ef_status ef_network_inductance(ef_context *context, ef_network *n, int incremen
         n->response[v * n->elements + i] = n->chain_flux[k] / n->tangent[i];
   }
   return EF_OK;
-}
-
-double ef_element_coenergy(const ef_network *n, size_t i) {
-  const ef_element *e = &n->element[i];
-  double u = n->drop[i];
-  if (e->law == EF_NO_LAW) return e->permeance * u * u / 2;
-  const ef_law *law = &n->law[e->law];
-  double h = u / e->length, shift = n->offset[e->law] * e->remanence;
-  double density =
-      EF_MU0 * h * h / 2 + ef_law_coenergy(law, h + shift) - ef_law_coenergy(law, shift);
-  return e->area * e->length * density + e->bypass * u * u / 2;
 }
 
 ef_status ef_network_energy(ef_context *context, const ef_network *n, double *energy,

@@ -88,7 +88,9 @@ function curve_file.parse(text, name, temperature)
       end
     end
   end
-  if #rows == 0 then fail.text(name, name .. " holds no points; allowed: a heading and rows of numbers") end
+  if #rows == 0 then
+    fail.text(name, name .. " holds no points; allowed: a heading and rows of numbers")
+  end
   return group(rows, temperature or 25)
 end
 

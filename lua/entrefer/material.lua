@@ -92,33 +92,16 @@ local function build(spec)
     source = spec.source or spec.file and "file " .. spec.file:match("[^/]*$") or "user",
     temperature_range = { curves[1] and curves[1].temperature,
       curves[#curves] and curves[#curves].temperature },
-    solver = core.material { kind = kind, curves = curves }, laws = {}, spec = spec,
+    solver = core.material { kind = kind, curves = curves }, laws = {}, spec = object.snapshot(spec),
   }
-end
-
-local function card_named(name)
-  local wanted = name:lower():gsub("%s+", "")
-  local names = {}
-  for i, card in ipairs(cards) do
-    names[i] = card.name
-    if card.name:lower():gsub("%s+", "") == wanted then return card end
-  end
-  fail.unknown("material", name, names)
-end
-
-local function from_card(card)
-  local spec = {}
-  for key, value in pairs(card) do spec[key] = value end
-  spec.source = cards.representative
-  return build(spec)
 end
 
 --- A material.
 -- @tparam string|table spec the name of a card ("PW3b"), a path to a CSV file of digitised points
 --   (ends in ".csv", see `entrefer.curve_file`), or a table: `name`; `kind` = "curve", "froelich",
 --   "langevin" or "linear"; `curves` = list of `{ temperature (degC), initial_permeability, saturation
---   (T), coercive_field (A/m), remanence (T), h (list, A/m), b (list, T) }`, or the fields of one curve directly;
---   or `file` with the fields that a file doesn't hold; `resistivity` (ohm m), `density` (kg/m3),
+--   (T), coercive_field (A/m), remanence (T), h (list, A/m), b (list, T) }`, or the fields of one
+--   curve directly (`points` = `{ h, b }`); or `file` with the fields that a file doesn't hold; `resistivity` (ohm m), `density` (kg/m3),
 --   `curie_temperature` (degC), `uncertainty`, `note`, `source`
 -- @treturn material
 -- @raise an error table naming the field
@@ -126,7 +109,8 @@ function material.new(spec)
   if type(spec) == "table" then return build(spec) end
   if type(spec) ~= "string" then fail("material", spec, "a name, a CSV file or a table") end
   if spec:match("%.[cC][sS][vV]$") then return build { file = spec } end
-  return from_card(card_named(spec))
+  return build(object.changed(object.named(cards, spec, "material"),
+    { source = cards.representative }))
 end
 
 --- The material itself, or a new one from what `material.new` takes.
@@ -227,10 +211,7 @@ end
 
 --- A changed copy.
 function methods:with(changes)
-  local spec = {}
-  for key, value in pairs(fields_of(self).spec) do spec[key] = value end
-  for key, value in pairs(changes) do spec[key] = value end
-  return build(spec)
+  return build(object.changed(fields_of(self).spec, changes))
 end
 
 return material

@@ -36,4 +36,37 @@ function object.class(name, methods)
   return make, function(self) return store[self] end
 end
 
+--- A copy of plain data, tables inside included; objects in it stay the same objects. What a user
+-- changes in his table later does not reach into what was built from it.
+function object.snapshot(value)
+  if type(value) ~= "table" or getmetatable(value) ~= nil then return value end
+  local copy = {}
+  for key, item in pairs(value) do copy[key] = object.snapshot(item) end
+  return copy
+end
+
+--- A shallow copy of a table with some entries changed.
+function object.changed(original, changes)
+  local copy = {}
+  for key, value in pairs(original) do copy[key] = value end
+  for key, value in pairs(changes) do copy[key] = value end
+  return copy
+end
+
+local function plain(name) return (name:lower():gsub("%s+", "")) end
+
+--- The card of a name, letter case and spaces aside.
+-- @tparam table cards list of tables with `name`
+-- @string name
+-- @string field for the message
+-- @raise an error table that suggests the nearest name
+function object.named(cards, name, field)
+  local names = {}
+  for i, card in ipairs(cards) do
+    names[i] = card.name
+    if plain(card.name) == plain(name) then return card end
+  end
+  fail.unknown(field, name, names)
+end
+
 return object

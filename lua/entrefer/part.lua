@@ -122,7 +122,7 @@ end
 function part.new(spec)
   if type(spec) ~= "table" then fail("part", spec, "a table") end
   fail.fields(spec, fields, "part")
-  local self = { spec = spec, fields_of = fields_of, name = spec.name, note = spec.note,
+  local self = { spec = object.snapshot(spec), fields_of = fields_of, name = spec.name, note = spec.note,
     core = shape.of(spec.core, "core"), material = material.of(spec.material, "material"),
     bobbin = read_bobbin(spec.bobbin) }
   local topology = topology_of(self.core)
@@ -158,28 +158,25 @@ end
 -- @tparam table changes
 -- @treturn part
 function methods:with(changes)
-  local spec = {}
-  for key, value in pairs(fields_of(self).spec) do spec[key] = value end
+  local spec, direct = fields_of(self).spec, {}
   local function first_changed(list, key, value)
     if not list or not list[1] then
       fail.text(key, ("there is no first entry whose %s could be changed"):format(key))
     end
-    local copy, first = { table.unpack(list) }, {}
-    for k, v in pairs(list[1]) do first[k] = v end
-    first[key] = value
-    copy[1] = first
+    local copy = object.changed(list, {})
+    copy[1] = object.changed(list[1], { [key] = value })
     return copy
   end
   for key, value in pairs(changes) do
     if key == "turns" then
-      spec.windings = first_changed(spec.windings, "turns", value)
+      direct.windings = first_changed(changes.windings or spec.windings, "turns", value)
     elseif key == "gap" then
-      spec.gaps = first_changed(spec.gaps, "length", value)
-    else
-      spec[key] = value
+      direct.gaps = first_changed(changes.gaps or spec.gaps, "length", value)
+    elseif direct[key] == nil then
+      direct[key] = value
     end
   end
-  return part.new(spec)
+  return part.new(object.changed(spec, direct))
 end
 
 --- Solves one operating point.

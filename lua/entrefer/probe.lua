@@ -89,7 +89,8 @@ function probe.new(spec)
     warnings[1] = "the place is outside the range of the closed field profile: use a field solution"
   end
   return make { part = part, sensor = sensor, gap = index, unit = unit, position = place,
-    tilt = tilt, relative_field = relative * math.cos(tilt), warnings = warnings, spec = spec }
+    tilt = tilt, relative_field = relative * math.cos(tilt), warnings = warnings,
+    spec = object.snapshot(spec) }
 end
 
 --- Reads the sensor.
@@ -127,10 +128,7 @@ end
 
 --- A changed copy.
 function methods:with(changes)
-  local spec = {}
-  for key, value in pairs(fields_of(self).spec) do spec[key] = value end
-  for key, value in pairs(changes) do spec[key] = value end
-  return probe.new(spec)
+  return probe.new(object.changed(fields_of(self).spec, changes))
 end
 
 return probe

@@ -59,7 +59,7 @@ local function build(spec)
   for _, name in ipairs(required) do
     if spec[name] == nil then fail.text("sensor " .. name, ("sensor %s is missing"):format(name)) end
   end
-  local read = { spec = spec }
+  local read = { spec = object.snapshot(spec) }
   for _, name in ipairs(other_fields) do read[name] = spec[name] end
   for name, rule in pairs(schema) do
     if spec[name] ~= nil then
@@ -97,17 +97,7 @@ end
 function sensor.new(spec)
   if type(spec) == "table" then return build(spec) end
   if type(spec) ~= "string" then fail("sensor", spec, "the name of a class or a table") end
-  local names, wanted = {}, spec:lower():gsub("%s+", "")
-  for i, card in ipairs(cards) do
-    names[i] = card.name
-    if card.name:lower():gsub("%s+", "") == wanted then
-      local copy = {}
-      for key, value in pairs(card) do copy[key] = value end
-      copy.source = cards.source
-      return build(copy)
-    end
-  end
-  fail.unknown("sensor", spec, names)
+  return build(object.changed(object.named(cards, spec, "sensor"), { source = cards.source }))
 end
 
 --- The sensor itself, or a new one from what `sensor.new` takes.
@@ -151,10 +141,7 @@ end
 
 --- A changed copy.
 function methods:with(changes)
-  local spec = {}
-  for key, value in pairs(fields_of(self).spec) do spec[key] = value end
-  for key, value in pairs(changes) do spec[key] = value end
-  return build(spec)
+  return build(object.changed(fields_of(self).spec, changes))
 end
 
 return sensor

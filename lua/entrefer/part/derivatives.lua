@@ -3,6 +3,7 @@
 -- @module entrefer.part.derivatives
 local core = require "entrefer.core"
 local fail = require "entrefer.fail"
+local object = require "entrefer.object"
 local solve = require "entrefer.part.solve"
 
 local derivatives = {}
@@ -20,11 +21,8 @@ end
 
 -- The part with gap `index` changed to a length.
 local function with_gap(part, fields, index, length)
-  local list = { table.unpack(fields.spec.gaps) }
-  local entry = {}
-  for key, value in pairs(list[index]) do entry[key] = value end
-  entry.length = length
-  list[index] = entry
+  local list = object.changed(fields.spec.gaps, {})
+  list[index] = object.changed(list[index], { length = length })
   return part:with { gaps = list }
 end
 
@@ -103,9 +101,9 @@ local function limb_named(part, name)
   fail.unknown("limb", tostring(name), names)
 end
 
-local function direction(object, part, by)
+local function direction(whole, part, by)
   fail.fields(by, { "gap", "turns", "area", "permeability" }, "by")
-  if by.gap then return gap_direction(object, part, by.gap) end
+  if by.gap then return gap_direction(whole, part, by.gap) end
   if by.turns then return turns_direction(part, by.turns) end
   if by.permeability then return iron_direction(part, "stretch") end
   if by.area == "all" then return iron_direction(part, "area") end
@@ -140,11 +138,11 @@ end
 -- @treturn table derivative of `flux_linkage`, `incremental_inductance` (numbers for one winding,
 --   else lists / row-major list), `inductance` (one winding), `energy`, `coenergy`,
 --   `limbs[name].flux_density`, `gaps[i].centre_flux_density`, `.flux` and `.force`
-function derivatives.at(object, part, at)
+function derivatives.at(whole, part, at)
   fail.fields(at, { "current", "temperature", "by" }, "derivatives")
   local by = at.by
   if type(by) ~= "table" then fail("by", by, "a table such as { gap = 1 }") end
-  local way = direction(object, part, by)
+  local way = direction(whole, part, by)
   local temperature = solve.temperatures(at.temperature)
   local current = solve.currents(part, at.current)
   part.solver:solve(current, part.material:law(temperature), false)

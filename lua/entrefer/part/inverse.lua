@@ -23,7 +23,7 @@ end
 
 -- A short gap saturates the core and a long one has little permeance: between them inductance has a
 -- maximum. The wanted gap lies beyond it, where the core still has room.
-local function longest_peak(lengths, values)
+local function peak_of(values)
   local peak = 1
   for i = 2, #values do
     if values[i] > values[peak] then peak = i end
@@ -57,7 +57,7 @@ function inverse.gap(part, fields, at)
     lengths[i + 1] = shortest * (longest / shortest) ^ (i / steps)
     values[i + 1] = value(lengths[i + 1])
   end
-  local peak = longest_peak(lengths, values)
+  local peak = peak_of(values)
   if target > values[peak] or target < values[#values] then
     fail("inductance", target, ("from %.4g H (gap %.4g m) to %.4g H (gap %.4g m) at this current")
       :format(values[#values], longest, values[peak], lengths[peak]))
