@@ -64,7 +64,7 @@ static void build_equations(double a, double gap, double depth, double matrix[MO
   memset(rhs, 0, sizeof(double) * MODES);
   for (int m = 1; m <= MODES; m++) {
     double q = EF_PI * m / b;
-    matrix[(m - 1) * (MODES + 1)] = b / (2 * q) * ef_bessel_k_ratio(q * a);
+    matrix[(size_t)(m - 1) * (MODES + 1)] = b / (2 * q) * ef_bessel_k_ratio(q * a);
   }
   for (int n = 1; n <= terms; n++) {
     double k = 2 * EF_PI * n / length, sine = sin(k * b), weight = 4 / length * i_ratio(k * a) / k;

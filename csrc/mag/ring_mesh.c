@@ -26,9 +26,10 @@ static void graded_bounds(size_t steps, double first, double *bound) {
     *(sum < 1 ? &low : &high) = q;
   }
   double size = 1, sum = 0;
-  for (size_t k = 0; k < steps; k++, size *= high) {
+  for (size_t k = 0; k < steps; k++) {
     bound[k] = sum;
     sum += size;
+    size *= high;
   }
   for (size_t k = 0; k < steps; k++)
     bound[k] /= sum;

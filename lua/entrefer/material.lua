@@ -101,8 +101,9 @@ end
 --   (ends in ".csv", see `entrefer.curve_file`), or a table: `name`; `kind` = "curve", "froelich",
 --   "langevin" or "linear"; `curves` = list of `{ temperature (degC), initial_permeability, saturation
 --   (T), coercive_field (A/m), remanence (T), h (list, A/m), b (list, T) }`, or the fields of one
---   curve directly (`points` = `{ h, b }`); or `file` with the fields that a file doesn't hold; `resistivity` (ohm m), `density` (kg/m3),
---   `curie_temperature` (degC), `uncertainty`, `note`, `source`
+--   curve directly (`points` = `{ h, b }`); or `file` with the fields that a file doesn't hold;
+--   `resistivity` (ohm m), `density` (kg/m3), `curie_temperature` (degC), `uncertainty`, `note`,
+--   `source`
 -- @treturn material
 -- @raise an error table naming the field
 function material.new(spec)

@@ -97,20 +97,58 @@ end
 
 local function one_line(text) return (text:gsub("[\0-\31\127]+", " ")) end
 
---- Aligned columns for the terminal.
-function made:text()
-  local lines, widths = all_cells(self, one_line)
-  local out = {}
-  for i, line in ipairs(lines) do
-    local cells = {}
-    for k, text in ipairs(line) do cells[k] = pad(text, widths[k], is_numeric(self, k)) end
-    out[#out + 1] = (table.concat(cells, "  "):gsub("%s+$", ""))
-    if i == 1 then
-      local rules = {}
-      for k, width in ipairs(widths) do rules[k] = ("-"):rep(width) end
-      out[#out + 1] = table.concat(rules, "  ")
+-- Breaks text at spaces into lines of at most `width` characters; a longer word stands alone.
+local function wrap(text, width)
+  local lines, line = {}, ""
+  for word in text:gmatch("%S+") do
+    local joined = line == "" and word or line .. " " .. word
+    if line ~= "" and (utf8.len(joined) or #joined) > width then
+      lines[#lines + 1], line = line, word
+    else
+      line = joined
     end
   end
+  lines[#lines + 1] = line
+  return lines
+end
+
+local widest_text = 64
+
+-- One row as lines of the terminal: long text continues below, in its own column.
+local function row_lines(self, cells, widths)
+  local wrapped, height, out = {}, 1, {}
+  for k, text in ipairs(cells) do
+    wrapped[k] = wrap(text, widths[k])
+    height = math.max(height, #wrapped[k])
+  end
+  for i = 1, height do
+    local parts = {}
+    for k in ipairs(cells) do
+      parts[k] = pad(wrapped[k][i] or "", widths[k], is_numeric(self, k))
+    end
+    out[i] = (table.concat(parts, "  "):gsub("%s+$", ""))
+  end
+  return table.concat(out, "\n")
+end
+
+--- Aligned columns for the terminal; headings and long text are wrapped inside their column.
+function made:text()
+  local lines = all_cells(self, one_line)
+  local widths = {}
+  for k in ipairs(self.columns) do
+    -- A number's heading may take several lines, so that the column is as wide as its figures.
+    local most, widest = is_numeric(self, k) and 12 or widest_text, 3
+    for _, line in ipairs(lines) do
+      for _, piece in ipairs(wrap(line[k], most)) do
+        widest = math.max(widest, utf8.len(piece) or #piece)
+      end
+    end
+    widths[k] = widest
+  end
+  local out, rules = {}, {}
+  for i, line in ipairs(lines) do out[i] = row_lines(self, line, widths) end
+  for k, width in ipairs(widths) do rules[k] = ("-"):rep(width) end
+  table.insert(out, 2, table.concat(rules, "  "))
   return table.concat(out, "\n") .. "\n"
 end
 

@@ -104,8 +104,10 @@ end
 -- One count of turns. Returns a design, or nil and the reason; `stop` when more turns can't help.
 local function with_turns(req, core, turns, wire)
   local start = core.geometry.window_height / 20
-  local done, part = pcall(new_part, req, core, turns, start, nil, wire)
-  if not done then return nil, tostring(part), true end
+  local part, err = fail.try(new_part, req, core, turns, start, nil, wire)
+  if not part then
+    return nil, ("%d turns do not fit: %s"):format(turns, err.allowed or err.message), true
+  end
   local found, gapped = candidates.gap(req, part)
   if not found then return nil, "the inductance is out of reach: " .. tostring(gapped) end
   local design = try_sensors(req, gapped)
