@@ -97,7 +97,10 @@ lint: ## luacheck, clang-tidy and clang-format, any warning fails
 	@$(SETUP) run build lint
 	luacheck --quiet --no-color lua recipes examples tests lua/bin/entrefer
 	clang-format --dry-run -Werror csrc/*.h csrc/*/*.[ch]
-	clang-tidy --quiet csrc/*/*.c -- -std=c11 $(PACKAGE_FLAGS)
+	@mkdir -p $(BUILD)
+	@# Its count of suppressed warnings in system headers goes to standard error: shown on failure only.
+	clang-tidy --quiet csrc/*/*.c -- -std=c11 $(PACKAGE_FLAGS) 2>$(BUILD)/clang-tidy.log \
+	  || { cat $(BUILD)/clang-tidy.log; false; }
 
 # The interpreter is built without the sanitizers, so their runtime is loaded before it. Leaks are
 # looked for when it has closed its state; nothing is suppressed.

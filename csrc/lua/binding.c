@@ -89,6 +89,25 @@ size_t efl_count(lua_State *L, int index, const char *what, const char *name, si
   return (size_t)value;
 }
 
+double *efl_numbers(lua_State *L, int index, const char *name, size_t *count) {
+  index = lua_absindex(L, index);
+  if (lua_getfield(L, index, name) != LUA_TTABLE)
+    efl_raise_text(L, name, lua_pushfstring(L, "%s is missing; allowed: a list of numbers", name));
+  *count = (size_t)lua_rawlen(L, -1);
+  double *values = lua_newuserdatauv(L, (*count + 1) * sizeof *values, 0);
+  for (size_t i = 0; i < *count; i++) {
+    lua_rawgeti(L, -2, (lua_Integer)i + 1);
+    if (lua_type(L, -1) != LUA_TNUMBER)
+      efl_raise_text(L, name,
+                     lua_pushfstring(L, "entry %d of %s is no number; allowed: numbers only",
+                                     (int)i + 1, name));
+    values[i] = lua_tonumber(L, -1);
+    lua_pop(L, 1);
+  }
+  lua_remove(L, -2);
+  return values;
+}
+
 void efl_set_number(lua_State *L, const char *name, double value) {
   lua_pushnumber(L, value);
   lua_setfield(L, -2, name);

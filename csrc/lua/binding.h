@@ -28,6 +28,10 @@ double efl_number_or(lua_State *L, int index, const char *what, const char *name
 /* Non-negative integer in field `name`, up to `most`. */
 size_t efl_count(lua_State *L, int index, const char *what, const char *name, size_t most);
 
+/* Copies the list in field `name` of the table at `index` into a userdata left on the stack; raises
+ * when it is no list of numbers. *count gets its length. */
+double *efl_numbers(lua_State *L, int index, const char *name, size_t *count);
+
 /* Sets field `name` of the table on the top of the stack. */
 void efl_set_number(lua_State *L, const char *name, double value);
 void efl_set_boolean(lua_State *L, const char *name, int value);
@@ -38,6 +42,7 @@ void efl_class(lua_State *L, const char *name, const luaL_Reg *metamethods,
                const luaL_Reg *methods);
 
 /* One opener per file, each adds its functions to the module table on the top of the stack. */
+void efl_open_curve(lua_State *L);
 void efl_open_shape(lua_State *L);
 void efl_open_material(lua_State *L);
 void efl_open_gap(lua_State *L);

@@ -13,26 +13,6 @@ static ef_material **check_material(lua_State *L) {
   return luaL_checkudata(L, 1, MATERIAL);
 }
 
-/* Copies the array `name` of the table at `index` into a userdata left on the stack. */
-static double *read_array(lua_State *L, int index, const char *name, size_t *count) {
-  index = lua_absindex(L, index);
-  if (lua_getfield(L, index, name) != LUA_TTABLE)
-    efl_raise_text(L, name, lua_pushfstring(L, "%s is missing; allowed: a list of numbers", name));
-  *count = (size_t)lua_rawlen(L, -1);
-  double *values = lua_newuserdatauv(L, (*count + 1) * sizeof *values, 0);
-  for (size_t i = 0; i < *count; i++) {
-    lua_rawgeti(L, -2, (lua_Integer)i + 1);
-    if (lua_type(L, -1) != LUA_TNUMBER)
-      efl_raise_text(L, name,
-                     lua_pushfstring(L, "entry %d of %s is no number; allowed: numbers only",
-                                     (int)i + 1, name));
-    values[i] = lua_tonumber(L, -1);
-    lua_pop(L, 1);
-  }
-  lua_remove(L, -2);
-  return values;
-}
-
 static void read_curve(lua_State *L, int index, ef_law_kind kind, ef_material_curve *curve) {
   curve->temperature = efl_number(L, index, "curve ", "temperature");
   curve->initial_permeability = efl_number_or(L, index, "curve ", "initial_permeability", 0);
@@ -40,8 +20,8 @@ static void read_curve(lua_State *L, int index, ef_law_kind kind, ef_material_cu
   curve->count = 0;
   if (kind != EF_LAW_CURVE) return;
   size_t fields, densities;
-  curve->h = read_array(L, index, "h", &fields);
-  curve->b = read_array(L, index, "b", &densities);
+  curve->h = efl_numbers(L, index, "h", &fields);
+  curve->b = efl_numbers(L, index, "b", &densities);
   if (fields != densities)
     efl_raise_value(L, "number of flux densities of a curve", (double)densities,
                     "as many as field strengths");
@@ -160,7 +140,7 @@ static int fit_law(lua_State *L) {
   lua_setfield(L, -2, "b");
   int table = lua_gettop(L);
   size_t fields, densities;
-  double *h = read_array(L, table, "h", &fields), *b = read_array(L, table, "b", &densities);
+  double *h = efl_numbers(L, table, "h", &fields), *b = efl_numbers(L, table, "b", &densities);
   if (fields != densities)
     efl_raise_value(L, "number of flux densities", (double)densities, "as many as field strengths");
   ef_law law;

@@ -8,6 +8,7 @@ int luaopen_entrefer_core(lua_State *L) {
   lua_newtable(L);
   efl_set_string(L, "version", ENTREFER_VERSION);
   efl_set_number(L, "mu0", EF_MU0);
+  efl_open_curve(L);
   efl_open_root(L);
   efl_open_shape(L);
   efl_open_material(L);

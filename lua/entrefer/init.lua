@@ -11,6 +11,7 @@
 -- @module entrefer
 local concentrator = require "entrefer.design.concentrator"
 local core = require "entrefer.core"
+local curve = require "entrefer.curve"
 local fail = require "entrefer.fail"
 local inductor = require "entrefer.design.inductor"
 local material = require "entrefer.material"
@@ -39,6 +40,8 @@ return {
   materials = material.names,
   --- Least-squares fit of a closed law to measured points.
   fit_material = material.fit,
+  --- A monotone curve through points: value, slope, integral, inverse.
+  curve = curve.new,
   --- A wire: round, AWG, litz or foil.
   wire = wire.new,
   --- A part: core, material, gaps, windings.
