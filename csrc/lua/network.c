@@ -56,11 +56,19 @@ typedef struct {
   ef_turns *coupling;
 } spec_arrays;
 
-static void read_turns(lua_State *L, size_t branch, const ef_network_spec *spec, ef_turns **next) {
+/* A metamethod may answer the second reading with more than was counted. */
+static void check_counted(lua_State *L, int counted) {
+  if (!counted) efl_raise_text(L, "branches", "branches changed while it was read");
+}
+
+static void read_turns(lua_State *L, size_t branch, const ef_network_spec *spec, ef_turns **next,
+                       const ef_turns *end) {
   if (lua_getfield(L, -1, "turns") == LUA_TTABLE)
     for (size_t w = 1; w <= spec->windings; w++) {
-      if (lua_rawgeti(L, -1, (lua_Integer)w) != LUA_TNIL)
+      if (lua_rawgeti(L, -1, (lua_Integer)w) != LUA_TNIL) {
+        check_counted(L, *next < end);
         *(*next)++ = (ef_turns){w - 1, branch, luaL_checknumber(L, -1)};
+      }
       lua_pop(L, 1);
     }
   lua_pop(L, 1);
@@ -69,16 +77,17 @@ static void read_turns(lua_State *L, size_t branch, const ef_network_spec *spec,
 static void read_branches(lua_State *L, ef_network_spec *spec, const spec_arrays *arrays) {
   int list = lua_gettop(L);
   size_t next_element = 0;
-  ef_turns *next_coupling = arrays->coupling;
+  ef_turns *next_coupling = arrays->coupling, *end = next_coupling + spec->couplings;
   for (size_t k = 0; k < spec->branches; k++) {
-    lua_rawgeti(L, list, (lua_Integer)k + 1);
+    check_counted(L, lua_rawgeti(L, list, (lua_Integer)k + 1) == LUA_TTABLE);
     int branch = lua_gettop(L);
     ef_branch *b = &arrays->branch[k];
     b->from = efl_count(L, branch, "branch ", "from", MOST_NODES) - 1;
     b->to = efl_count(L, branch, "branch ", "to", MOST_NODES) - 1;
-    read_turns(L, k, spec, &next_coupling);
+    read_turns(L, k, spec, &next_coupling, end);
     b->first = next_element;
     b->count = list_length(L, branch, "elements");
+    check_counted(L, b->count <= spec->elements - next_element);
     for (size_t i = 0; i < b->count; i++) {
       if (lua_rawgeti(L, -1, (lua_Integer)i + 1) != LUA_TTABLE)
         efl_raise_text(L, "elements", "an entry of elements is no table");
@@ -87,11 +96,13 @@ static void read_branches(lua_State *L, ef_network_spec *spec, const spec_arrays
     }
     lua_settop(L, list);
   }
+  check_counted(L, next_element == spec->elements);
   spec->couplings = (size_t)(next_coupling - arrays->coupling);
 }
 
 static int network_create(lua_State *L) {
   luaL_checktype(L, 1, LUA_TTABLE);
+  lua_settop(L, 1);
   ef_network_spec spec = {.nodes = efl_count(L, 1, "", "nodes", MOST_NODES),
                           .windings = efl_count(L, 1, "", "windings", MOST_WINDINGS),
                           .laws = efl_count(L, 1, "", "laws", MOST_LAWS)};
@@ -156,27 +167,39 @@ static ef_law law_of(lua_State *L, int index) {
   return law->law;
 }
 
+/* Reads `count` laws from argument 3 and leaves on the stack what keeps them alive: the law itself,
+ * or a list of our own, which the caller of Lua can't change. */
+static void read_laws(lua_State *L, size_t count, ef_law *laws) {
+  int list = lua_type(L, 3) == LUA_TTABLE;
+  if (list)
+    lua_createtable(L, (int)count, 0);
+  else
+    lua_pushvalue(L, 3);
+  for (size_t i = 0; i < count; i++) {
+    if (list)
+      lua_rawgeti(L, 3, (lua_Integer)i + 1);
+    else
+      lua_pushvalue(L, 3);
+    laws[i] = law_of(L, -1);
+    if (list)
+      lua_rawseti(L, -2, (lua_Integer)i + 1);
+    else
+      lua_pop(L, 1);
+  }
+}
+
 /* network:solve(current, law [, warm [, coercive]]) -> iterations, residual
  * current: a number or a list; law: a law or a list of laws; coercive: A/m, a number or a list. */
 static int network_solve(lua_State *L) {
   efl_network *self = efl_check_network(L);
+  lua_settop(L, 5);
   ef_law laws[MOST_LAWS];
   double *current = efl_scratch(self), *coercive = current + self->windings;
   read_numbers(L, 2, "current", self->windings, current);
-  if (lua_type(L, 3) == LUA_TTABLE) {
-    for (size_t i = 0; i < self->laws; i++) {
-      lua_rawgeti(L, 3, (lua_Integer)i + 1);
-      laws[i] = law_of(L, -1);
-      lua_pop(L, 1);
-    }
-  } else {
-    for (size_t i = 0; i < self->laws; i++)
-      laws[i] = law_of(L, 3);
-  }
   int with_remanence = !lua_isnoneornil(L, 5);
   if (with_remanence) read_numbers(L, 5, "coercive field", self->laws, coercive);
   /* The network keeps pointers into the laws: anchor them while it holds a solution. */
-  lua_pushvalue(L, 3);
+  read_laws(L, self->laws, laws);
   lua_setiuservalue(L, 1, 1);
   ef_network_input input = {laws, with_remanence ? coercive : NULL, current, lua_toboolean(L, 4)};
   ef_network_report report;

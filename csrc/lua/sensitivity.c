@@ -16,14 +16,15 @@ static void read_change(lua_State *L, ef_element_change *change) {
 
 /* Change of turns per coupling, in the order of the network's own couplings. */
 static double *read_turns(lua_State *L, efl_network *self, size_t *count) {
-  *count = ef_network_couplings(self->network, NULL);
-  if (lua_getfield(L, 2, "turns") != LUA_TTABLE) {
+  int given = lua_getfield(L, 2, "turns") == LUA_TTABLE;
+  efl_check_network(L); /* a metamethod of the arguments may have closed it */
+  const ef_turns *coupling;
+  *count = ef_network_couplings(self->network, &coupling);
+  if (!given) {
     lua_pop(L, 1);
     return NULL;
   }
   int table = lua_gettop(L);
-  const ef_turns *coupling;
-  ef_network_couplings(self->network, &coupling);
   double *change = lua_newuserdatauv(L, (*count + 1) * sizeof *change, 0);
   for (size_t i = 0; i < *count; i++) {
     change[i] = 0;

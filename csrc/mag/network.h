@@ -66,7 +66,8 @@ typedef struct {
 
 /* Solves. Converged when the imbalance at every node (and along every chain) is below
  * context->tolerance times the sum of the flux magnitudes there, or below the rounding floor of 16
- * eps times the largest such sum in the network (a dead end carries nothing but rounding).
+ * eps times the largest such sum in the network (a dead end carries nothing but rounding), or times
+ * the largest flux that a coercive field alone would drive through an element.
  * EF_NOT_CONVERGED after context->max_iterations, EF_CANCELLED by context->progress (called before
  * each step), EF_BAD_VALUE for a current that is not finite. After a failure the network holds no
  * solution and the questions below answer EF_BAD_VALUE. */

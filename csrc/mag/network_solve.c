@@ -133,10 +133,22 @@ static int chains_agree(const ef_network *n, double tolerance, double floor) {
   return 1;
 }
 
+/* Largest flux that a coercive field alone would drive through an element: what remains of it is a
+ * difference, good to its rounding. */
+static double coercive_flux(const ef_network *n) {
+  double largest = 0;
+  for (size_t i = 0; i < n->elements; i++) {
+    const ef_element *e = &n->element[i];
+    if (e->law != EF_NO_LAW)
+      largest = fmax(largest, n->tangent[i] * e->length * fabs(n->offset[e->law] * e->remanence));
+  }
+  return largest;
+}
+
 /* Largest imbalance relative to the flux magnitudes; *met tells whether every node and chain is
  * within its limit. */
 static double imbalance(ef_network *n, double tolerance, int *met) {
-  double floor = 16 * DBL_EPSILON * sum_up_nodes(n), worst = 0;
+  double floor = 16 * DBL_EPSILON * fmax(sum_up_nodes(n), coercive_flux(n)), worst = 0;
   *met = chains_agree(n, tolerance, floor);
   for (size_t i = 0; i < n->nodes; i++) {
     double off = fabs(n->balance[i]);

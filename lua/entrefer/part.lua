@@ -27,13 +27,15 @@ local windings = require "entrefer.part.windings"
 local part = {}
 
 local fields = { "core", "material", "gaps", "windings", "bobbin", "name", "note" }
+local with_fields = { "turns", "gap", table.unpack(fields) }
 local bobbin_default = { wall = 0.8e-3, clearance = 0.2e-3, flange = 0.8e-3 }
 
 local methods = {}
 local make, fields_of = object.class("part", methods)
 
-local function topology_of(core)
-  return core.geometry.topology or "loop"
+local function list_of(value, field)
+  if value ~= nil and type(value) ~= "table" then fail(field, value, "a list of tables") end
+  return value or {}
 end
 
 local function read_bobbin(bobbin)
@@ -46,28 +48,22 @@ local function read_bobbin(bobbin)
   return read
 end
 
-local function section_gaps(list, core)
-  local entries, names = {}, {}
-  for i, section in ipairs(core.sections) do names[i] = section.name end
-  for i, entry in ipairs(list) do
-    local known = false
-    for _, name in ipairs(names) do known = known or name == (entry.leg or names[1]) end
-    if not known then fail.unknown(("gap %d leg"):format(i), tostring(entry.leg), names) end
-    local copy = {}
-    for key, value in pairs(entry) do copy[key] = value end
-    copy.leg = "ring" -- a custom loop has sections for legs; the reader only checks the rest
-    entries[i] = gaps.read(copy, i, "ring", "ring")
-    entries[i].leg = entry.leg or names[1]
-    entries[i].legs = { entries[i].leg }
-  end
-  return entries
+-- Where a gap or a winding goes when the user names no leg.
+local default_leg = {
+  three_leg = { gap = "centre", winding = "centre" }, two_leg = { gap = "all", winding = "left" },
+  ring = { gap = "ring", winding = "ring" },
+}
+
+local function defaults_of(core_set)
+  local topology = core_set.geometry.topology
+  if topology then return default_leg[topology] end
+  local first = core_set.sections[1].name
+  return { gap = first, winding = first }
 end
 
-local function read_gaps(list, core, topology)
-  if topology == "loop" then return section_gaps(list, core) end
-  local default = topology == "three_leg" and "centre" or topology == "ring" and "ring" or "all"
-  local entries = {}
-  for i, entry in ipairs(list) do entries[i] = gaps.read(entry, i, topology, default) end
+local function read_gaps(list, core_set)
+  local entries, default = {}, defaults_of(core_set).gap
+  for i, entry in ipairs(list) do entries[i] = gaps.read(entry, i, core_set, default) end
   return entries
 end
 
@@ -85,10 +81,12 @@ local function plain_units(entries)
   return units
 end
 
-local function build_network(self, topology)
+local function build_network(self)
   local geometry = self.core.geometry
-  if topology == "ring" then return ring.build(geometry, self.units, self.windings) end
-  if topology == "loop" then return loop.build(self.core.sections, self.units, self.windings) end
+  if self.topology == "ring" then return ring.build(geometry, self.units, self.windings) end
+  if self.topology == "loop" then
+    return loop.build(self.core.sections, self.units, self.windings)
+  end
   return ladder.build(geometry, self.core.shape, self.units, self.height, self.windings)
 end
 
@@ -125,18 +123,17 @@ function part.new(spec)
   local self = { spec = object.snapshot(spec), fields_of = fields_of, name = spec.name, note = spec.note,
     core = shape.of(spec.core, "core"), material = material.of(spec.material, "material"),
     bobbin = read_bobbin(spec.bobbin) }
-  local topology = topology_of(self.core)
-  self.topology = topology
-  self.gap_entries = read_gaps(spec.gaps or {}, self.core, topology)
-  if topology == "ring" or topology == "loop" then
+  self.topology = self.core.geometry.topology or "loop"
+  self.gap_entries = read_gaps(list_of(spec.gaps, "gaps"), self.core)
+  if self.topology == "ring" or self.topology == "loop" then
     self.units, self.height = plain_units(self.gap_entries), self.core.geometry.window_height or 0
   else
     self.units, self.height = gaps.expand(self.gap_entries, self.core.geometry.window_height)
   end
-  local default = topology == "three_leg" and "centre" or topology == "ring" and "ring" or "left"
-  self.windings = windings.read(spec.windings or {}, topology, self.core, self.height, default)
+  self.windings = windings.read(list_of(spec.windings, "windings"), self.core, self.height,
+    defaults_of(self.core).winding)
   self.fill = windings.check(self.windings, self.core.geometry, self.bobbin, self.height)
-  local net = build_network(self, topology)
+  local net = build_network(self)
   self.solver = core_solver.network(net:spec())
   self.limbs, self.positions, self.branches = net.limbs, net.positions, net.branches
   self.plain = estimate.prepare(self)
@@ -158,6 +155,7 @@ end
 -- @tparam table changes
 -- @treturn part
 function methods:with(changes)
+  fail.fields(changes, with_fields, "part")
   local spec, direct = fields_of(self).spec, {}
   local function first_changed(list, key, value)
     if not list or not list[1] then

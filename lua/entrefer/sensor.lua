@@ -50,6 +50,7 @@ end
 
 local function read_temperatures(range)
   range = range or { -40, 125 }
+  if type(range) ~= "table" then fail("sensor temperature range", range, "a list { low, high }") end
   local low = quantity.read(range[1], "degC", "sensor temperature range, low")
   return { low, quantity.read(range[2], "degC", "sensor temperature range, high", { min = low }) }
 end
@@ -130,6 +131,7 @@ end
 -- @treturn boolean whether the flux density is beyond the range or the output at a rail
 function methods:voltage(flux_density, at)
   local fields = fields_of(self)
+  flux_density = quantity.read(flux_density, "T", "flux density")
   local supply = at and at.supply and
     quantity.read(at.supply, "V", "supply", { positive = true }) or fields.supply
   local scale = fields.ratiometric and supply / fields.supply or 1

@@ -15,16 +15,10 @@ function builder:node()
   return self.nodes
 end
 
-local function turns_or_nil(turns)
-  for _, value in pairs(turns or {}) do
-    if value ~= 0 then return turns end
-  end
-end
-
 --- Adds a branch with its elements; returns the number of its first element.
 function builder:branch(from, to, elements, turns)
-  self.branches[#self.branches + 1] = { from = from, to = to, elements = elements,
-    turns = turns_or_nil(turns) }
+  -- Turns of 0 are kept: a longer gap may bring the winding's end onto this branch.
+  self.branches[#self.branches + 1] = { from = from, to = to, elements = elements, turns = turns }
   local first = self.elements + 1
   self.elements = self.elements + #elements
   return first

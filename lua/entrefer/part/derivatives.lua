@@ -41,12 +41,13 @@ local function compare_elements(lower, upper, step)
   return changes
 end
 
-local function compare_turns(lower, upper, step)
+local function compare_turns(lower, upper, windings, step)
   local turns = {}
   for number, branch in ipairs(lower.branches) do
-    for winding, value in pairs(branch.turns or {}) do
-      turns[number] = turns[number] or {}
-      turns[number][winding] = (upper.branches[number].turns[winding] - value) / step
+    local below, above = branch.turns or {}, upper.branches[number].turns or {}
+    turns[number] = {}
+    for winding = 1, windings do
+      turns[number][winding] = ((above[winding] or 0) - (below[winding] or 0)) / step
     end
   end
   return turns
@@ -54,8 +55,9 @@ end
 
 -- A longer gap changes its own permeance, the iron beside it, the rungs of the ladder and the turns
 -- that lie over it. All of that is explicit geometry, built by one piece of code: its derivative is
--- taken there by a central difference of 1e-4 of the length (error about 1e-8); the response of the
--- solution to it comes from the factorisation.
+-- taken there by a central difference of 1e-4 of the length (error about 1e-8; of a ring, whose boundary
+-- solution moves in small steps, below 1e-3); the response of the solution to it comes from the
+-- factorisation.
 local function gap_direction(part, fields, index)
   local entry = fields.gap_entries[index]
   if not entry then
@@ -66,7 +68,7 @@ local function gap_direction(part, fields, index)
   local lower = fields.fields_of(with_gap(part, fields, index, entry.length - half))
   local upper = fields.fields_of(with_gap(part, fields, index, entry.length + half))
   return { elements = compare_elements(lower, upper, 2 * half),
-    turns = compare_turns(lower, upper, 2 * half) }
+    turns = compare_turns(lower, upper, #fields.windings, 2 * half) }
 end
 
 local function turns_direction(part, index)
@@ -124,8 +126,10 @@ local function gap_record(part, index, raw, by, way)
   }
   if by.gap == index then
     record.centre_flux_density = record.centre_flux_density - factor * drop / unit.length
-    record.force = record.force - drop ^ 2 / 2 * way.elements[unit.element].by_length
   end
+  -- A neighbour's length changes this gap's edges, so its permeance too.
+  local change = by.gap and way.elements[unit.element].by_length or 0
+  record.force = record.force - drop ^ 2 / 2 * change
   return record
 end
 

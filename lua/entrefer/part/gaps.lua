@@ -19,8 +19,16 @@ local legs_of = {
 }
 
 --- The legs that a name stands for on a core; raises with the names the core has.
-function gaps.legs(topology, name, field)
-  local known = legs_of[topology]
+-- @tparam core core
+-- @string name of a leg or group of legs; of a custom core: of a section
+-- @string field for the message
+-- @treturn table list of legs
+function gaps.legs(core_set, name, field)
+  local known = legs_of[core_set.geometry.topology]
+  if not known then
+    known = {}
+    for _, section in ipairs(core_set.sections) do known[section.name] = { section.name } end
+  end
   if known[name] then return known[name] end
   local names = {}
   for leg in pairs(known) do names[#names + 1] = leg end
@@ -54,20 +62,22 @@ for _, name in ipairs(core.gap_methods()) do methods[name] = true end
 --- Reads one entry of a part's gap list.
 -- @tparam table entry see `entrefer.part`
 -- @number index of the entry, for messages
--- @string topology of the core
+-- @tparam core core_set
 -- @string default_leg
-function gaps.read(entry, index, topology, default_leg)
+function gaps.read(entry, index, core_set, default_leg)
   local label = "gap " .. index
   if type(entry) ~= "table" then fail(label, entry, "a table") end
   fail.fields(entry, entry_fields, label)
+  local topology = core_set.geometry.topology
   local leg = entry.leg or default_leg
   local kind = check_choice(entry.kind or (topology == "ring" and "sawn" or "ground"), kinds,
     label .. " kind")
-  if kind == "spacer" and leg ~= "all" and topology ~= "ring" then
+  local has_legs = topology == "three_leg" or topology == "two_leg"
+  if kind == "spacer" and has_legs and leg ~= "all" then
     fail(label .. " leg", leg, "\"all\" for a spacer: it lifts the halves apart on every leg")
   end
   return {
-    label = label, leg = leg, legs = gaps.legs(topology, leg, label .. " leg"), kind = kind,
+    label = label, leg = leg, legs = gaps.legs(core_set, leg, label .. " leg"), kind = kind,
     length = quantity.read(entry.length, "m", label .. " length", { positive = true }),
     count = quantity.read(entry.count or 1, "1", label .. " count",
       { positive = true, integer = true, max = 64 }),
@@ -153,29 +163,52 @@ local function free_reach(iron, to_gap, wound, yoke)
   return to_gap and share or share + yoke
 end
 
-local function window_edge(facing_gap, window_width, reach)
-  -- Both walls of the window at the same potential: a slot; else a leg at the potential of the
-  -- gap's middle. Each has its own effective reach; a shorter free wall limits both.
-  local effective = facing_gap and 2 * window_width / math.pi or window_width / math.pi
-  if reach < effective then return { kind = "free exact", reach = reach } end
-  return { kind = facing_gap and "near yoke" or "near leg", reach = window_width }
+-- Distance from a gap's middle to that of its neighbour; a yoke mirrors the gap.
+local function pitch(iron, to_gap, length)
+  return to_gap and iron + length or 2 * iron + length
+end
+
+-- Neighbours at a pitch T add -(4/pi) sum ln(1 - q^m) to an edge across a window of width w, q =
+-- exp(-pi T/w), which is the same as lengthening its reach by this factor (docs/methods/network.md).
+-- The sum is held below T = w/20, where gaps would have to be shorter still for it to apply.
+local function crowding(distance, window_width)
+  local q = math.exp(-math.pi * math.max(distance / window_width, 0.05))
+  local product, power = 1, q
+  while power > 1e-9 do
+    product, power = product * (1 - power), power * q
+  end
+  return product ^ -2
+end
+
+-- A winding that fills the window drives flux across it evenly (the ladder's rungs). What a gap adds
+-- is the corner of a leg at the potential of the gap's middle; of two gaps that face each other in
+-- one loop each has its share of the window, as their walls have opposite potentials. Walls of equal
+-- potential, in a window without a winding, make a slot.
+local function window_edge(facing, window_width, crowd)
+  if facing.same then return { kind = "near yoke", reach = window_width } end
+  return { kind = "near leg", reach = window_width * facing.share * crowd }
 end
 
 --- The edges of one gap.
 -- @tparam table unit single gap
--- @tparam table around `below`, `above`: iron to the next gap or yoke, m; `below_gap`, `above_gap`:
---   whether that is a gap; `wound`; `yoke` thickness, m; `window_width`, m; `facing`: list of
---   booleans for the sides x_low, x_high: nil = open side, false = leg without a gap there, true =
---   leg with a gap at the same height; `shell`: the facing leg goes all around; `closed`: the pole
---   goes on in the depth direction
+-- @tparam table around `length` of the gap, m; `below`, `above`: iron to the next gap or yoke, m;
+--   `below_gap`, `above_gap`: whether that is a gap; `wound`; `yoke` thickness, m; `window_width`, m;
+--   `facing`: for the sides x_low, x_high: nil = open side, else the leg across the window as
+--   `{ share = this gap's part of the length of both gaps at this height, same = true where a gap
+--   faces it and both legs carry flux the same way }`; `shell`: the facing leg goes all around;
+--   `closed`: the pole goes on in the depth direction
 function gaps.edges(around)
   local reach = math.min(
     free_reach(around.below, around.below_gap, around.wound, around.yoke),
     free_reach(around.above, around.above_gap, around.wound, around.yoke))
   local free = { kind = "free exact", reach = reach }
+  local width = around.window_width
+  local below = pitch(around.below, around.below_gap, around.length)
+  local above = pitch(around.above, around.above_gap, around.length)
+  local crowd = math.sqrt(crowding(below, width) * crowding(above, width))
   local function side(facing)
     if facing == nil then return free end
-    return window_edge(facing, around.window_width, reach)
+    return window_edge(facing, width, crowd)
   end
   local x_low, x_high = side(around.facing[1]), side(around.facing[2])
   local y = around.shell and x_high or around.closed and { kind = "none", reach = reach } or free

@@ -70,7 +70,7 @@ end
 -- @tparam table at as `gap_for`
 -- @treturn integer turns, rounded up
 -- @treturn number turns, exact
--- @raise an error table when the build no longer fits the window or the core saturates first
+-- @raise an error table when the build no longer fits the window or a million turns don't give it
 function inverse.turns(part, fields, at)
   local target, request, kind = read_target(fields, at, "turns_for")
   -- The question is about the network: the window is checked with the whole number at the end.
@@ -84,7 +84,7 @@ function inverse.turns(part, fields, at)
   local low, high = 1e-3, math.max(1, fields.windings[1].turns)
   while value(high) < target do
     if high > 1e6 then
-      fail("inductance", target, ("below %.4g H, where the core saturates"):format(value(high)))
+      fail("inductance", target, ("below %.4g H, what %.4g turns give"):format(value(high), high))
     end
     low, high = high, 2 * high
   end

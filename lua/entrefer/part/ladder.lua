@@ -176,9 +176,12 @@ local function evaluate_gaps(legs, pairs_of_legs, by_name, context)
       local before, after = leg.units[i - 1], leg.units[i + 1]
       local sides = {}
       for side, other in ipairs(facing[leg.name]) do
-        sides[side] = gap_at(other.units, unit.z, context.height) ~= nil
+        local across = gap_at(other.units, unit.z, context.height)
+        sides[side] = { same = across ~= nil and other.up == leg.up,
+          share = unit.length / (unit.length + (across and across.length or 0)) }
       end
       local edges = gaps.edges {
+        length = unit.length,
         below = unit.z - unit.length / 2 - (before and before.z + before.length / 2
           or -context.height / 2),
         above = (after and after.z - after.length / 2 or context.height / 2)

@@ -3,6 +3,7 @@
 local core = require "entrefer.core"
 local estimate = require "entrefer.part.estimate"
 local fail = require "entrefer.fail"
+local object = require "entrefer.object"
 local quantity = require "entrefer.quantity"
 
 local solve = {}
@@ -156,8 +157,8 @@ local function full_record(part, current, temperature, law, iterations, residual
     flux_linkage = linkages(part),
     inductance = solver:inductance(false),
     incremental_inductance = solver:inductance(true),
-    limbs = {}, gaps = {}, warnings = part.notes,
-    method = part.method,
+    limbs = {}, gaps = {}, warnings = object.snapshot(part.notes),
+    method = object.snapshot(part.method),
     error = { residual = residual, iterations = iterations },
   }
   result.energy, result.coenergy = solver:energy()
@@ -190,6 +191,11 @@ local scalars = {
   end,
 }
 
+local function names_of(only)
+  if type(only) ~= "table" then fail("only", only, "a list of names") end
+  return only
+end
+
 local function pick(name)
   return scalars[name] or fail.unknown("only", tostring(name), scalar_names)
 end
@@ -200,7 +206,7 @@ function solve.once(part, at)
   local current, temperature, law, iterations, residual = run(part, at, at.warm)
   if at.only then
     local result = {}
-    for _, name in ipairs(at.only) do result[name] = pick(name)(part) end
+    for _, name in ipairs(names_of(at.only)) do result[name] = pick(name)(part) end
     return result
   end
   return full_record(part, current, temperature, law, iterations, residual)
@@ -227,7 +233,7 @@ local sweep_default = { "flux_linkage", "inductance", "incremental_inductance",
 function solve.sweep(part, at)
   fail.fields(at, request_fields, "sweep")
   local temperature = solve.temperatures(at.temperature)
-  local names = at.only or sweep_default
+  local names = names_of(at.only or sweep_default)
   local readers, columns = {}, { current = {}, temperature = temperature }
   for i, name in ipairs(names) do
     readers[i] = pick(name)

@@ -11,6 +11,7 @@ local fields = { "name", "turns", "leg", "wire", "span", "angle", "extent", "rev
 
 local function read_span(entry, label, height)
   if entry.span == nil then return { -height / 2, height / 2 } end
+  if type(entry.span) ~= "table" then fail(label .. " span", entry.span, "a list { from, to }") end
   local from = quantity.read(entry.span[1], "m", label .. " span, start")
   local to = quantity.read(entry.span[2], "m", label .. " span, end")
   if from < -height / 2 or to > height / 2 or from >= to then
@@ -20,21 +21,9 @@ local function read_span(entry, label, height)
   return { from, to }
 end
 
-local function leg_names(topology, core, entry, label, default_leg)
-  if topology ~= "loop" then
-    return gaps.legs(topology, entry.leg or default_leg, label .. " leg")
-  end
-  local names = {}
-  for i, section in ipairs(core.sections) do
-    names[i] = section.name
-    if section.name == (entry.leg or names[1]) then return { section.name } end
-  end
-  fail.unknown(label .. " leg", tostring(entry.leg), names)
-end
-
-local function shares(topology, legs, entry, label)
+local function shares(legs, entry, label)
   local share = {}
-  if topology == "three_leg" and #legs == 3 then
+  if #legs == 3 then
     fail(label .. " leg", entry.leg, "\"centre\", \"left\", \"right\" or \"outer\"")
   end
   for _, leg in ipairs(legs) do share[leg] = (entry.reverse and -1 or 1) / #legs end
@@ -43,21 +32,20 @@ end
 
 --- Reads the list of windings.
 -- @tparam table list the user's entries
--- @string topology "three_leg", "two_leg", "ring" or "loop"
--- @tparam table core
+-- @tparam core core_set
 -- @number height of the legs, m
 -- @string default_leg
 -- @treturn table list of `{ name, turns, legs = { [leg] = share }, first_leg, span, angle, extent,
 --   wire }`
-function windings.read(list, topology, core, height, default_leg)
+function windings.read(list, core_set, height, default_leg)
   local read = {}
   for i, entry in ipairs(list) do
     local label = "winding " .. i
     if type(entry) ~= "table" then fail(label, entry, "a table") end
     fail.fields(entry, fields, label)
-    local legs = leg_names(topology, core, entry, label, default_leg)
+    local legs = gaps.legs(core_set, entry.leg or default_leg, label .. " leg")
     read[i] = {
-      label = label, name = entry.name or label, legs = shares(topology, legs, entry, label),
+      label = label, name = entry.name or label, legs = shares(legs, entry, label),
       first_leg = legs[1],
       turns = quantity.read(entry.turns, "1", label .. " turns", { positive = true }),
       span = read_span(entry, label, height),
@@ -111,10 +99,11 @@ end
 -- round wire are counted in a square pattern (common practice, no source; conservative).
 -- @treturn number share of the window's area that the wires' squares fill
 function windings.check(read, geometry, bobbin, height)
+  if not geometry.topology then return nil end -- a custom core's window is unknown
   local room = windings.room(geometry, bobbin, height)
   local filled = 0
   for _, winding in ipairs(read) do
-    if winding.wire and geometry.topology then
+    if winding.wire then
       local diameter = winding.wire.overall_diameter or math.sqrt(winding.wire.overall_area)
       local share = 0
       for _, part in pairs(winding.legs) do share = math.max(share, math.abs(part)) end
