@@ -73,6 +73,20 @@ describe("gap_for", function()
     assert.is_true(value(length * 1.01) < value(length))
   end)
 
+  it("keeps to the room that a gap has where it stands", function()
+    for _, gaps in ipairs { { { length = 1e-3, position = 12e-3 } },
+      { { length = 1e-3 }, { length = 1e-3, position = 4e-3 } } } do
+      local part = build { core = "E 42/21/15", gaps = gaps }
+      local target = 0.9 * part:solve { current = 5 }.inductance
+      local length, changed = part:gap_for { inductance = target, current = 5 }
+      near(target, changed:solve { current = 5 }.inductance, tolerance)
+      assert.is_true(length > 1e-3)
+      -- A range given by hand is taken at its word.
+      refuses("^gap %d position$", "allowed", part.gap_for, part, { inductance = target, current = 5,
+        longest = 9e-3 })
+    end
+  end)
+
   it("says what can be had when nothing gives it", function()
     local part = build(cores[1])
     local err = refuses("^inductance$", "from .* H %(gap .* to .* H", part.gap_for, part,

@@ -95,21 +95,13 @@ static double last_field(const ef_law *law) {
   return law->curve.x[law->curve.count - 1];
 }
 
-static ef_law_point curve_at(const ef_law *law, double h, size_t *hint) {
-  const ef_curve *curve = &law->curve;
-  if (h >= last_field(law)) {
-    tail t = curve_tail(law);
-    double shrink = 1 / (1 + t.rate * (h - last_field(law)));
-    return (ef_law_point){law->saturation - t.room * shrink, t.room * t.rate * shrink * shrink};
-  }
-  size_t piece = *hint;
-  if (piece + 1 >= curve->count || h < curve->x[piece] || h >= curve->x[piece + 1])
-    *hint = piece = ef_curve_piece(curve, h);
-  ef_curve_point p = ef_curve_at(curve, piece, h);
-  return (ef_law_point){p.value, p.first};
+static ef_law_point tail_at(const ef_law *law, double h) {
+  tail t = curve_tail(law);
+  double shrink = 1 / (1 + t.rate * (h - last_field(law)));
+  return (ef_law_point){law->saturation - t.room * shrink, t.room * t.rate * shrink * shrink};
 }
 
-ef_law_point ef_law_at(const ef_law *law, double h, size_t *hint) {
+ef_law_point ef_law_beyond(const ef_law *law, double h) {
   double x = fabs(h), chi = EF_MU0 * law->susceptibility;
   ef_law_point p = {0, 0};
   switch (law->kind) {
@@ -128,7 +120,7 @@ ef_law_point ef_law_at(const ef_law *law, double h, size_t *hint) {
     break;
   }
   case EF_LAW_CURVE:
-    p = curve_at(law, x, hint);
+    p = tail_at(law, x);
     break;
   }
   if (h < 0) p.polarisation = -p.polarisation;

@@ -37,9 +37,20 @@ ef_status ef_law_closed(ef_context *context, ef_law_kind kind, double initial_pe
 ef_status ef_law_points(ef_context *context, size_t count, const double *h, const double *j,
                         double *slope, double initial_permeability, double saturation, ef_law *law);
 
+/* J and dJ/dH of a closed law, or of a curve beyond its points. */
+ef_law_point ef_law_beyond(const ef_law *law, double h);
+
 /* J and dJ/dH at field strength h (A/m, any finite value). *hint: the piece last used, 0 at first
- * (speeds up repeated calls; the result does not depend on it). */
-ef_law_point ef_law_at(const ef_law *law, double h, size_t *hint);
+ * (speeds up repeated calls; the result does not depend on it). Inline: it is the inner loop of the
+ * network. */
+static inline ef_law_point ef_law_at(const ef_law *law, double h, size_t *hint) {
+  const ef_curve *curve = &law->curve;
+  double x = h < 0 ? -h : h;
+  if (law->kind != EF_LAW_CURVE || x >= curve->x[curve->count - 1]) return ef_law_beyond(law, h);
+  *hint = ef_curve_piece_near(curve, *hint, x);
+  ef_curve_point p = ef_curve_at(curve, *hint, x);
+  return (ef_law_point){h < 0 ? -p.value : p.value, p.first};
+}
 
 /* d2J/dH2 at h (odd in h; one-sided at the points of a curve). */
 double ef_law_curvature(const ef_law *law, double h);

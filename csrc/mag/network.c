@@ -76,10 +76,12 @@ static ef_status check_spec(ef_context *context, const ef_network_spec *spec) {
   return check_branches(context, spec);
 }
 
-/* The other end of a branch at `node`, or EF_GROUND when the branch does not touch it. */
+#define NOWHERE ((size_t)-1)
+
+/* The other end of a branch at `node`, or NOWHERE when the branch does not touch it. */
 static size_t other_end(const ef_branch *b, size_t node) {
   if (b->from == node) return b->to;
-  return b->to == node ? b->from : EF_GROUND;
+  return b->to == node ? b->from : NOWHERE;
 }
 
 static void count_branches(const ef_network *n, size_t *degree) {
@@ -96,33 +98,33 @@ static void count_branches(const ef_network *n, size_t *degree) {
  * rings in a narrow band. */
 static void number_nodes(ef_network *n, const size_t *degree, size_t *queue) {
   size_t ground = 0, tail = 0, placed = 0;
-  const size_t unvisited = n->nodes;
+  const size_t unvisited = NOWHERE;
   for (size_t i = 1; i < n->nodes; i++)
     if (degree[i] > degree[ground]) ground = i;
   for (size_t i = 0; i < n->nodes; i++)
     n->place[i] = unvisited;
-  n->place[ground] = EF_GROUND;
+  n->place[ground] = n->unknowns;
   while (placed < n->unknowns) {
     /* Without the reference node the rest may fall apart: start again in each part. */
-    size_t start = EF_GROUND;
+    size_t start = NOWHERE;
     for (size_t i = 0; i < n->nodes; i++)
-      if (n->place[i] == unvisited && (start == EF_GROUND || degree[i] < degree[start])) start = i;
+      if (n->place[i] == unvisited && (start == NOWHERE || degree[i] < degree[start])) start = i;
     size_t head = tail;
     queue[tail++] = start;
     n->place[start] = placed++;
     for (; head < tail; head++)
       for (size_t k = 0; k < n->branches; k++) {
         size_t other = other_end(&n->branch[k], queue[head]);
-        if (other == EF_GROUND || n->place[other] != unvisited) continue;
+        if (other == NOWHERE || n->place[other] != unvisited) continue;
         n->place[other] = placed++;
         queue[tail++] = other;
       }
   }
   for (size_t i = 0; i < n->nodes; i++)
-    if (n->place[i] != EF_GROUND) n->place[i] = n->unknowns - 1 - n->place[i];
+    if (i != ground) n->place[i] = n->unknowns - 1 - n->place[i];
 }
 
-/* A node that no path joins to node 0, or EF_GROUND: it would make the equations singular. */
+/* A node that no path joins to node 0, or NOWHERE: it would make the equations singular. */
 static size_t find_lost_node(const ef_network *n, size_t *queue, size_t *seen) {
   size_t tail = 1;
   memset(seen, 0, n->nodes * sizeof *seen);
@@ -131,13 +133,13 @@ static size_t find_lost_node(const ef_network *n, size_t *queue, size_t *seen) {
   for (size_t head = 0; head < tail; head++)
     for (size_t k = 0; k < n->branches; k++) {
       size_t other = other_end(&n->branch[k], queue[head]);
-      if (other == EF_GROUND || seen[other]) continue;
+      if (other == NOWHERE || seen[other]) continue;
       seen[other] = 1;
       queue[tail++] = other;
     }
   for (size_t i = 0; i < n->nodes; i++)
     if (!seen[i]) return i;
-  return EF_GROUND;
+  return NOWHERE;
 }
 
 static ef_status order_nodes(ef_context *context, ef_network *n) {
@@ -147,7 +149,7 @@ static ef_status order_nodes(ef_context *context, ef_network *n) {
   count_branches(n, work + n->nodes);
   number_nodes(n, work + n->nodes, work);
   ef_release(context, work, 2 * n->nodes, sizeof *work);
-  if (lost == EF_GROUND) return EF_OK;
+  if (lost == NOWHERE) return EF_OK;
   return bad(context, "node", lost, "number of paths to the first node", 0, "at least 1");
 }
 
@@ -155,11 +157,26 @@ static size_t band_width(const ef_network *n) {
   size_t width = 0;
   for (size_t k = 0; k < n->branches; k++) {
     size_t a = n->place[n->branch[k].from], b = n->place[n->branch[k].to];
-    if (a == EF_GROUND || b == EF_GROUND) continue;
+    if (a == n->unknowns || b == n->unknowns) continue;
     size_t apart = a > b ? a - b : b - a;
     if (apart > width) width = apart;
   }
   return width;
+}
+
+/* Where each branch couples its nodes in the band, and which branches are bent or straight. */
+static void sort_branches(ef_network *n) {
+  size_t stride = n->matrix.width + 1;
+  for (size_t k = 0; k < n->branches; k++) {
+    const ef_branch *b = &n->branch[k];
+    size_t a = n->place[b->from], c = n->place[b->to];
+    size_t row = a > c ? a : c, column = a > c ? c : a;
+    n->corner[k] = row == n->unknowns ? n->unknowns * stride : row - column + column * stride;
+    if (b->count == 1 && n->element[b->first].law == EF_NO_LAW)
+      n->straight[n->straights++] = k;
+    else
+      n->bent[n->bents++] = k;
+  }
 }
 
 /* Hands out consecutive parts of one block. */
@@ -172,9 +189,9 @@ static double *take(double **next, size_t count) {
 static ef_status allocate_numbers(ef_context *context, ef_network *n) {
   n->matrix.size = n->unknowns;
   n->matrix.width = band_width(n);
-  size_t band = (n->matrix.width + 1) * n->unknowns;
-  n->number_count = n->laws + n->windings + 3 * n->branches + 7 * n->elements + 3 * n->nodes +
-                    n->unknowns + n->windings * (n->elements + n->windings) + band;
+  size_t band = ef_network_band_size(n);
+  n->number_count = n->laws + n->windings + 3 * n->branches + 8 * n->elements + 3 * n->nodes +
+                    n->unknowns + 1 + n->windings * (n->elements + n->windings) + 2 * band;
   n->numbers = ef_allocate(context, n->number_count, sizeof(double));
   if (!n->numbers) return EF_NO_MEMORY;
   double *next = n->numbers;
@@ -190,13 +207,15 @@ static ef_status allocate_numbers(ef_context *context, ef_network *n) {
   n->tangent = take(&next, n->elements);
   n->yield = take(&next, n->elements);
   n->step = take(&next, n->elements);
+  n->inverse_length = take(&next, n->elements);
   n->potential = take(&next, n->nodes);
   n->balance = take(&next, n->nodes);
   n->magnitude = take(&next, n->nodes);
-  n->unknown = take(&next, n->unknowns);
+  n->unknown = take(&next, n->unknowns + 1);
   n->response = take(&next, n->windings * n->elements);
   n->inductance = take(&next, n->windings * n->windings);
   n->matrix.band = take(&next, band);
+  n->base = take(&next, band);
   return EF_OK;
 }
 
@@ -206,9 +225,12 @@ static ef_status allocate_lists(ef_context *context, ef_network *n, const ef_net
   n->coupling = ef_allocate(context, n->couplings, sizeof *n->coupling);
   n->place = ef_allocate(context, n->nodes, sizeof *n->place);
   n->hint = ef_allocate(context, n->elements, sizeof *n->hint);
+  n->corner = ef_allocate(context, 3 * n->branches, sizeof *n->corner);
   n->law = ef_allocate(context, n->laws, sizeof *n->law);
-  if (!n->branch || !n->element || !n->coupling || !n->place || !n->hint || !n->law)
+  if (!n->branch || !n->element || !n->coupling || !n->place || !n->hint || !n->corner || !n->law)
     return EF_NO_MEMORY;
+  n->bent = n->corner + n->branches;
+  n->straight = n->bent + n->branches;
   memcpy(n->branch, spec->branch, n->branches * sizeof *n->branch);
   memcpy(n->element, spec->element, n->elements * sizeof *n->element);
   if (n->couplings) memcpy(n->coupling, spec->coupling, n->couplings * sizeof *n->coupling);
@@ -231,11 +253,14 @@ ef_status ef_network_create(ef_context *context, const ef_network_spec *spec,
   status = allocate_lists(context, n, spec);
   if (status == EF_OK) status = order_nodes(context, n);
   if (status == EF_OK) status = allocate_numbers(context, n);
-  if (status == EF_OK)
-    *network = n;
-  else
+  if (status != EF_OK) {
     ef_network_release(context, n);
-  return status;
+    return status;
+  }
+  sort_branches(n);
+  ef_network_prepare(n);
+  *network = n;
+  return EF_OK;
 }
 
 void ef_network_release(ef_context *context, ef_network *n) {
@@ -245,6 +270,7 @@ void ef_network_release(ef_context *context, ef_network *n) {
   ef_release(context, n->coupling, n->couplings, sizeof *n->coupling);
   ef_release(context, n->place, n->nodes, sizeof *n->place);
   ef_release(context, n->hint, n->elements, sizeof *n->hint);
+  ef_release(context, n->corner, 3 * n->branches, sizeof *n->corner);
   ef_release(context, n->law, n->laws, sizeof *n->law);
   ef_release(context, n->numbers, n->number_count, sizeof(double));
   ef_release(context, n, 1, sizeof *n);

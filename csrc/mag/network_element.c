@@ -1,21 +1,21 @@
 /* One element of a network: its flux, its coenergy, its permeabilities. */
 #include "network_internal.h"
 
-void ef_element_at(ef_network *n, size_t index, double drop, double *flux, double *density,
-                   double *tangent) {
+void ef_element_evaluate(ef_network *n, size_t index) {
   const ef_element *e = &n->element[index];
+  double drop = n->drop[index];
   if (e->law == EF_NO_LAW) {
-    *flux = e->permeance * drop;
-    *density = 0;
-    *tangent = e->permeance;
+    n->flux[index] = e->permeance * drop;
+    n->tangent[index] = e->permeance;
     return;
   }
-  double h = drop / e->length;
+  double inverse = n->inverse_length[index], h = drop * inverse;
   ef_law_point p =
       ef_law_at(&n->law[e->law], h + n->offset[e->law] * e->remanence, &n->hint[index]);
-  *density = EF_MU0 * h + p.polarisation;
-  *flux = e->area * *density + e->bypass * drop;
-  *tangent = e->area / e->length * (EF_MU0 + p.slope) + e->bypass;
+  double density = EF_MU0 * h + p.polarisation;
+  n->density[index] = density;
+  n->flux[index] = e->area * density + e->bypass * drop;
+  n->tangent[index] = e->area * inverse * (EF_MU0 + p.slope) + e->bypass;
 }
 
 double ef_element_secant(const ef_network *n, size_t i) {

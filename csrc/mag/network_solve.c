@@ -9,23 +9,26 @@
 #include "network_internal.h"
 
 static void evaluate(ef_network *n) {
-  for (size_t i = 0; i < n->elements; i++)
-    ef_element_at(n, i, n->drop[i], &n->flux[i], &n->density[i], &n->tangent[i]);
+  for (size_t m = 0; m < n->bents; m++) {
+    const ef_branch *b = &n->branch[n->bent[m]];
+    for (size_t i = b->first; i < b->first + b->count; i++)
+      ef_element_evaluate(n, i);
+  }
+  for (size_t m = 0; m < n->straights; m++) {
+    size_t i = n->branch[n->straight[m]].first;
+    n->flux[i] = n->tangent[i] * n->drop[i];
+  }
 }
 
 static double potential_drop(const ef_network *n, size_t k) {
   return n->potential[n->branch[k].from] - n->potential[n->branch[k].to] + n->source[k];
 }
 
-/* One Newton step from the present drops: n->step per element; the change of the potentials is left
- * in n->unknown. With `fit` the drops of each chain are brought to its branch's drop, so that a
- * start that does not fit the sources is mended by the first full step. Later steps only add
- * changes: a stiff branch would turn the rounding of its two large potentials into flux again and
- * again. */
-static ef_status newton_step(ef_context *context, ef_network *n, int fit) {
-  ef_network_condense(n, n->tangent);
-  ef_network_clear_rhs(n);
-  for (size_t k = 0; k < n->branches; k++) {
+/* Flux that each branch would carry with the nodes' potentials as they are. With `fit` the drops of
+ * a chain are brought to its branch's drop. */
+static void drive_branches(ef_network *n, int fit) {
+  for (size_t m = 0; m < n->bents; m++) {
+    size_t k = n->bent[m];
     const ef_branch *b = &n->branch[k];
     double sum = 0, excess = 0;
     for (size_t i = b->first; i < b->first + b->count; i++) {
@@ -36,9 +39,25 @@ static ef_status newton_step(ef_context *context, ef_network *n, int fit) {
     n->chain_flux[k] = n->chain_permeance[k] * (lacking + sum);
     ef_network_add_rhs(n, k, n->chain_flux[k]);
   }
+  for (size_t m = 0; m < n->straights; m++) {
+    size_t k = n->straight[m], i = n->branch[k].first;
+    double lacking = fit ? potential_drop(n, k) - n->drop[i] : 0;
+    n->chain_flux[k] = n->flux[i] + n->chain_permeance[k] * lacking;
+    ef_network_add_rhs(n, k, n->chain_flux[k]);
+  }
+}
+
+/* One Newton step from the present drops: n->step per element; the change of the potentials is left
+ * in n->unknown. With `fit` a start that does not fit the sources is mended by the first full step.
+ * Later steps only add changes: a stiff branch would turn the rounding of its two large potentials
+ * into flux again and again. */
+static ef_status newton_step(ef_context *context, ef_network *n, int fit) {
+  ef_network_condense(n, n->tangent);
+  ef_network_clear_rhs(n);
+  drive_branches(n, fit);
   ef_status status = ef_network_factor(context, n, EF_FACTOR_INCREMENTAL);
   if (status != EF_OK) return status;
-  ef_band_solve(&n->matrix, n->unknown);
+  ef_network_solve_rhs(n);
   for (size_t k = 0; k < n->branches; k++) {
     const ef_branch *b = &n->branch[k];
     double flux = n->chain_flux[k] + n->chain_permeance[k] * ef_network_unknown_drop(n, k);
@@ -52,7 +71,7 @@ static void move(ef_network *n, double share) {
   for (size_t i = 0; i < n->elements; i++)
     n->drop[i] += share * n->step[i];
   for (size_t i = 0; i < n->nodes; i++)
-    if (n->place[i] != EF_GROUND) n->potential[i] += share * n->unknown[n->place[i]];
+    n->potential[i] += share * n->unknown[n->place[i]];
   evaluate(n);
 }
 
@@ -105,6 +124,10 @@ static void line_search(ef_network *n, int trusting) {
   move(n, share);
 }
 
+static double larger(double a, double b) {
+  return a > b ? a : b;
+}
+
 /* Sums up each node's flux balance and flux magnitudes; returns the largest magnitude. */
 static double sum_up_nodes(ef_network *n) {
   double largest = 0;
@@ -119,7 +142,7 @@ static double sum_up_nodes(ef_network *n) {
     n->magnitude[b->to] += fabs(in);
   }
   for (size_t i = 0; i < n->nodes; i++)
-    largest = fmax(largest, n->magnitude[i]);
+    largest = larger(largest, n->magnitude[i]);
   return largest;
 }
 
@@ -137,10 +160,11 @@ static int chains_agree(const ef_network *n, double tolerance, double floor) {
  * difference, good to its rounding. */
 static double coercive_flux(const ef_network *n) {
   double largest = 0;
+  if (!n->magnetised) return 0;
   for (size_t i = 0; i < n->elements; i++) {
     const ef_element *e = &n->element[i];
     if (e->law != EF_NO_LAW)
-      largest = fmax(largest, n->tangent[i] * e->length * fabs(n->offset[e->law] * e->remanence));
+      largest = larger(largest, n->tangent[i] * e->length * fabs(n->offset[e->law] * e->remanence));
   }
   return largest;
 }
@@ -148,12 +172,12 @@ static double coercive_flux(const ef_network *n) {
 /* Largest imbalance relative to the flux magnitudes; *met tells whether every node and chain is
  * within its limit. */
 static double imbalance(ef_network *n, double tolerance, int *met) {
-  double floor = 16 * DBL_EPSILON * fmax(sum_up_nodes(n), coercive_flux(n)), worst = 0;
+  double floor = 16 * DBL_EPSILON * larger(sum_up_nodes(n), coercive_flux(n)), worst = 0;
   *met = chains_agree(n, tolerance, floor);
   for (size_t i = 0; i < n->nodes; i++) {
     double off = fabs(n->balance[i]);
     if (!(off <= tolerance * n->magnitude[i] + floor)) *met = 0;
-    if (n->magnitude[i] > 0) worst = fmax(worst, off / n->magnitude[i]);
+    if (n->magnitude[i] > 0) worst = larger(worst, off / n->magnitude[i]);
   }
   return worst;
 }
@@ -162,12 +186,14 @@ static ef_status take_input(ef_context *context, ef_network *n, const ef_network
   for (size_t i = 0; i < n->windings; i++)
     if (!isfinite(input->current[i]))
       return ef_fail(context, EF_BAD_VALUE, "current", input->current[i], "a finite number");
+  n->magnetised = 0;
   for (size_t i = 0; i < n->laws; i++) {
     double offset = input->coercive_field ? input->coercive_field[i] : 0;
     if (!isfinite(offset))
       return ef_fail(context, EF_BAD_VALUE, "coercive field", offset, "a finite number");
     n->law[i] = input->law[i];
     n->offset[i] = offset;
+    n->magnetised |= offset != 0;
   }
   memcpy(n->current, input->current, n->windings * sizeof *n->current);
   memset(n->source, 0, n->branches * sizeof *n->source);

@@ -103,16 +103,6 @@ size_t ef_curve_piece(const ef_curve *curve, double x) {
   return low;
 }
 
-ef_curve_point ef_curve_at(const ef_curve *curve, size_t piece, double x) {
-  double d = x - curve->x[piece], m = curve->slope[piece];
-  double c2 = curve->square[piece], c3 = curve->cube[piece];
-  ef_curve_point p = {curve->y[piece] + d * (m + d * (c2 + d * c3)), m + d * (2 * c2 + 3 * d * c3),
-                      2 * c2 + 6 * d * c3};
-  /* Rounding must not turn a flat end into a falling one. */
-  if (p.first < 0) p.first = 0;
-  return p;
-}
-
 double ef_curve_integral(const ef_curve *curve, size_t piece, double x) {
   double d = x - curve->x[piece];
   return curve->area[piece] +

@@ -41,8 +41,30 @@ ef_status ef_curve_build(ef_context *context, const char *name, size_t count, co
 /* Index of the piece that holds x: 0 for x below the first point, count - 2 beyond the last. */
 size_t ef_curve_piece(const ef_curve *curve, double x);
 
+/* The same when the piece is likely `hint` or one beside it, as in an iteration. */
+static inline size_t ef_curve_piece_near(const ef_curve *curve, size_t hint, double x) {
+  const double *at = curve->x;
+  if (hint + 1 < curve->count) {
+    if (x >= at[hint]) {
+      if (x < at[hint + 1]) return hint;
+      if (hint + 2 < curve->count && x < at[hint + 2]) return hint + 1;
+    } else if (hint > 0 && x >= at[hint - 1]) {
+      return hint - 1;
+    }
+  }
+  return ef_curve_piece(curve, x);
+}
+
 /* Value and derivatives at x, which must lie within the points (the end pieces go on otherwise). */
-ef_curve_point ef_curve_at(const ef_curve *curve, size_t piece, double x);
+static inline ef_curve_point ef_curve_at(const ef_curve *curve, size_t piece, double x) {
+  double d = x - curve->x[piece], m = curve->slope[piece];
+  double c2 = curve->square[piece], c3 = curve->cube[piece];
+  ef_curve_point p = {curve->y[piece] + d * (m + d * (c2 + d * c3)), m + d * (2 * c2 + 3 * d * c3),
+                      2 * c2 + 6 * d * c3};
+  /* Rounding must not turn a flat end into a falling one. */
+  if (p.first < 0) p.first = 0;
+  return p;
+}
 
 /* Integral of the curve from its first point to x in `piece`. */
 double ef_curve_integral(const ef_curve *curve, size_t piece, double x);

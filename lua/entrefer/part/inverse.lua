@@ -31,11 +31,19 @@ local function peak_of(values)
   return peak
 end
 
+-- A gap off the leg's middle or beside another has less room than a third of the leg.
+local function longest_buildable(part, longest, shortest)
+  while longest > shortest and not pcall(part.with, part, { gap = longest }) do
+    longest = 0.9 * longest
+  end
+  return longest
+end
+
 --- The length of gap 1 for a wanted inductance at a current and temperature.
 -- Of the two lengths that can give it, the longer is returned: there the core is not saturated.
 -- @tparam table at `inductance` (H), `current` (A), `temperature` (degC), `incremental` (true: the
 --   incremental inductance is meant), `shortest`, `longest` (m; default a thousandth and a third of
---   the leg's length; of a ring's mean diameter)
+--   the leg's length, as far as there is room; of a ring's mean diameter)
 -- @treturn number gap length, m
 -- @treturn part with that gap
 -- @raise an error table when no gap in the range gives it, with the most that can be had
@@ -47,8 +55,8 @@ function inverse.gap(part, fields, at)
   local geometry = fields.core.geometry
   local scale = geometry.window_height or geometry.effective_length / 4
   local shortest = quantity.read(at.shortest or scale / 1000, "m", "shortest", { positive = true })
-  local longest = quantity.read(at.longest or scale / 3 / fields.gap_entries[1].count, "m",
-    "longest", { min = shortest })
+  local longest = quantity.read(at.longest or longest_buildable(part,
+    scale / 3 / fields.gap_entries[1].count, shortest), "m", "longest", { min = shortest })
   local function value(length)
     return inductance_of(part:with { gap = length }, request, kind)
   end
