@@ -134,7 +134,7 @@ local function variant_table(items)
       item.verdict.passed and "pass" or "FAIL" }
   end
   return { columns = { { name = "arrangement" }, { name = "gap", unit = "mm", digits = 3 },
-    { name = "gaps", digits = 1 }, { name = "at the sensor", unit = "uT/A", digits = 4 },
+    { name = "gaps", digits = 0 }, { name = "at the sensor", unit = "uT/A", digits = 4 },
     { name = "ring at trip", unit = "mT", digits = 3 },
     { name = "shortfall at trip", unit = "%", digits = 3 },
     { name = "linear within 2 % to", unit = "A" }, { name = "sensor" }, { name = "verdict" } },

@@ -154,6 +154,25 @@ describe("a part of every shape", function()
     end)
   end)
 
+  it("without iron is a coil in air, to the order of magnitude", function()
+    -- L = mu0 N2 A k/h with k = 1/(1 + 0.9 r/h) (H. A. Wheeler, Proc. IRE 16, 1928, 1398, from memory) of
+    -- the mean turn. The air paths of the network are flux tubes of plain shape, which carry less than
+    -- the real field: a lower bound of the inductance, within a factor of three.
+    for _, name in ipairs { "E 42/21/15", "E 100/60/28", "ETD 39/20/13", "PQ 50/50", "P 26/16",
+      "U 93/76/30" } do
+      local part = ef.part { core = name, material = { initial_permeability = 1 },
+        windings = { { turns = 24 } } }
+      local g = part.core.geometry
+      local pole = g.topology == "two_leg" and g.outer_pole or g.centre_pole
+      local w, h = g.window_width, g.window_height
+      local area = pole.shape == "round" and math.pi / 4 * (pole.width + w) ^ 2
+        or (pole.width + w) * (pole.depth + w)
+      local coil = mu0 * 24 ^ 2 * area / h / (1 + 0.9 * math.sqrt(area / math.pi) / h)
+      local ratio = part:solve { current = 1 }.inductance / coil
+      assert(ratio > 1 / 3 and ratio < 1, ("%s: %.3g of a coil in air"):format(name, ratio))
+    end
+  end)
+
   it("sends flux around itself when its core is saturated", function()
     every_part(soft, function(part, row)
       local current = 2000 * easy_current(part)
@@ -328,8 +347,8 @@ describe("several windings", function()
   end)
 
   it("aid winding 1 on every leg unless they are reversed", function()
-    local function mutual(core, gaps, legs, reverse)
-      local part = ef.part { core = core, material = linear, gaps = gaps, windings = {
+    local function mutual(core, list, legs, reverse)
+      local part = ef.part { core = core, material = linear, gaps = list, windings = {
         { turns = 10, leg = legs[1] }, { turns = 6, leg = legs[2], reverse = reverse } } }
       local s = part:solve { current = { 2, 0 } }
       -- Positive flux is what winding 1 drives, in every leg and gap.
@@ -349,6 +368,20 @@ describe("several windings", function()
     assert.is_true(mutual("U 25/20/13", u, { "right", "left" }, true) < 0)
     local ring = { { length = 1e-3 } }
     near(mutual("R 40/24/16", ring, {}), -mutual("R 40/24/16", ring, {}, true), 1e-11)
+  end)
+
+  it("on both outer legs are half as many on the centre leg", function()
+    -- Each outer leg has half of the turns and half of the flux. A short gap and a high permeability
+    -- leave leakage out.
+    local function with(leg, turns)
+      return e_part { material = { initial_permeability = 1e6 }, gaps = { { length = 2e-5 } },
+        windings = { { turns = turns, leg = leg } } }:solve { current = 0.1 }
+    end
+    local outer, centre = with("outer", 20), with("centre", 10)
+    near(centre.inductance, outer.inductance, 2e-3)
+    near(centre.gaps[1].flux, outer.gaps[1].flux, 2e-3)
+    near(centre.estimate.flux_density, outer.estimate.flux_density, 1e-12)
+    near(centre.estimate.inductance, outer.estimate.inductance, 1e-12)
   end)
 
   it("in series on one leg are one winding", function()
@@ -496,7 +529,8 @@ end)
 
 describe("remanence", function()
   it("offsets the reading by Hc le / N, whatever the gap", function()
-    -- The gap takes g of le (up to 3 % here) and leakage of a ring and a window moves 1 %.
+    -- The gap takes g of le (up to 3 % here), leakage of a ring and a window moves 1 %, and a ring's
+    -- path is up to 2 % longer than le: it keeps C1 over the real section.
     for _, core in ipairs { "E 42/21/15", "R 25/15/10", "U 93/76/30" } do
       for _, gap in ipairs { 0.5e-3, 1e-3, 2e-3 } do
         local part = e_part { core = core, material = { initial_permeability = 1e6,
@@ -505,7 +539,7 @@ describe("remanence", function()
         local one = part:solve { current = 1 }
         local expected = parts.remanent_current(15, part.core.geometry.effective_length, 24)
         near(expected, left.gaps[1].centre_flux_density / one.gaps[1].centre_flux_density, 0.035)
-        near(expected, left.flux_linkage / one.flux_linkage, 0.015)
+        near(expected, left.flux_linkage / one.flux_linkage, 0.02)
         local reversed = part:solve { current = 0, remanence = -0.5 }
         near(-left.flux_linkage / 2, reversed.flux_linkage, 1e-9)
       end
@@ -523,21 +557,16 @@ describe("a gapped ring", function()
     return ef.part(spec)
   end
 
-  -- Mean over the real section: the core's flux density is that of the effective area.
-  local function back_to_gap(row, part)
+  local function back_to_gap(part)
     local s = part:solve { current = 1 }
-    local area = (row.outer - row.inner) / 2 * row.height * 1e-6
-    return s.core_flux_density * part.core.geometry.effective_area / area
-      / s.gaps[1].centre_flux_density, s
+    return s.core_flux_density / s.gaps[1].centre_flux_density, s
   end
 
   it("has the back-to-gap ratio of a 3-D solution", function()
     for _, row in ipairs(gaps.rings) do
-      local ratio, s = back_to_gap(row, ring(row, 1e7))
+      local ratio, s = back_to_gap(ring(row, 1e7))
       -- 0.6 % of the boundary solution, 0.2 % of the reference, 0.5 % for the ladder's 16 sectors.
       near(row.ratio, ratio, 0.013, ("%g/%g/%g"):format(row.outer, row.inner, row.height))
-      -- Effective and real area differ by up to 4 % for thick rings.
-      near(row.ratio, s.core_flux_density / s.gaps[1].centre_flux_density, 0.04)
       near(math.pi / row.gaps, s.limbs.ring.position, 1e-9)
       assert.equal("ring boundary solution", s.method.gaps[1])
     end
@@ -546,11 +575,11 @@ describe("a gapped ring", function()
   it("of 38/26/8 with 4.5 mm has a ratio of about 6.3 at a permeability of 2000", function()
     local row = gaps.rings[1]
     -- Two digits of the reference: 1 %; boundary solution and ladder: 1.3 %.
-    near(parts.ring_at_2000, back_to_gap(row, ring(row, 2000)), 0.023)
+    near(parts.ring_at_2000, back_to_gap(ring(row, 2000)), 0.023)
     -- It falls with the permeability: the iron no longer holds its potential.
     local last = math.huge
     for _, permeability in ipairs { 1e6, 2000, 500, 100 } do
-      local ratio = back_to_gap(row, ring(row, permeability))
+      local ratio = back_to_gap(ring(row, permeability))
       assert.is_true(ratio < last)
       last = ratio
     end

@@ -2,54 +2,14 @@
 local cjson = require "cjson"
 local ef = require "entrefer"
 local lfs = require "lfs"
+local command = require "tests.command"
 local support = require "tests.support"
 local near = support.near
-
-local lua = "/usr/bin/lua5.4"
+local read, write, entrefer = command.read, command.write, command.entrefer
+local fresh_folder, remove_folder = command.fresh_folder, command.remove_folder
 
 -- Records are rounded to six digits, so that a last digit of a maths library does not show.
 local six_digits = 5e-6
-
-local function read(path)
-  local file = assert(io.open(path, "rb"))
-  local text = file:read("a")
-  file:close()
-  return text
-end
-
-local function write(path, text)
-  local file = assert(io.open(path, "wb"))
-  file:write(text)
-  file:close()
-end
-
-local function fresh_folder()
-  local name = os.tmpname()
-  os.remove(name)
-  assert(lfs.mkdir(name))
-  return name
-end
-
-local function remove_folder(folder)
-  for entry in lfs.dir(folder) do
-    local path = folder .. "/" .. entry
-    if entry ~= "." and entry ~= ".." then
-      if lfs.attributes(path, "mode") == "directory" then remove_folder(path) else os.remove(path) end
-    end
-  end
-  lfs.rmdir(folder)
-end
-
--- Runs the command; returns exit code, standard output, standard error.
-local function entrefer(arguments, prefix)
-  local out, err = os.tmpname(), os.tmpname()
-  local _, _, code = os.execute(("%s %s lua/bin/entrefer %s >%s 2>%s"):format(prefix or "", lua,
-    arguments, out, err))
-  local texts = { read(out), read(err) }
-  os.remove(out)
-  os.remove(err)
-  return code, texts[1], texts[2]
-end
 
 local function run_example(name, folder)
   local code, out, err = entrefer(("run part-from-spec spec=examples/%s/spec.lua --out %s"):format(

@@ -25,12 +25,15 @@ ef_status ef_root(ef_context *context, ef_function f, void *user, double low, do
     return ef_fail_message(context, EF_BAD_VALUE, "bracket",
                            "the function does not change sign between the bounds");
   double sign = at_low < 0 ? 1 : -1, value = at_high, x = high;
-  double width = high - low;
+  double last_x = low, last_value = at_low, width = high - low;
   for (int i = 0; i < 2200; i++) { /* more than all halvings of the double range */
     int slow = i % 3 == 2 && high - low > width / 2;
     if (i % 3 == 2) width = high - low;
+    if (isnan(slope)) slope = (value - last_value) / (x - last_x);
     double next = next_point(x, value, slope, low, high, slow);
     double moved = fabs(next - x);
+    last_x = x;
+    last_value = value;
     x = next;
     f(user, x, &value, &slope);
     if (isnan(value))

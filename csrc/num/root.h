@@ -4,7 +4,8 @@
 
 #include "context.h"
 
-/* Writes f(x) and df/dx. A derivative of 0 or NaN is allowed: the step is then a bisection. */
+/* Writes f(x) and df/dx. A derivative that is NaN is replaced by the secant through the last two
+ * points; one of 0 leads to a bisection. */
 typedef void (*ef_function)(void *user, double x, double *value, double *derivative);
 
 /* Root of f in [low, high], where f(low) and f(high) differ in sign (or one is zero).

@@ -210,6 +210,32 @@ function methods:saturation(temperature)
   return self:law(temperature or 25):saturation()
 end
 
+--- A copy whose polarisation follows J(factor H): the initial permeability is multiplied (less the
+-- vacuum's part), the saturation stays. For tolerances of the permeability.
+-- @number factor above 0
+-- @treturn material
+function methods:stretched(factor)
+  factor = quantity.read(factor, "1", "factor", { positive = true })
+  local fields, curves = fields_of(self), {}
+  for i, curve in ipairs(fields.curves) do
+    local copy = object.changed(curve, {})
+    if curve.initial_permeability then
+      copy.initial_permeability = 1 + factor * (curve.initial_permeability - 1)
+    end
+    if curve.h then
+      copy.h, copy.b = {}, {}
+      for k, h in ipairs(curve.h) do
+        copy.h[k] = h / factor
+        copy.b[k] = curve.b[k] + core.mu0 * (h / factor - h)
+      end
+    end
+    curves[i] = copy
+  end
+  return build { name = ("%s, permeability x %g"):format(fields.name, factor), kind = fields.kind,
+    curves = curves, density = fields.density, resistivity = fields.resistivity,
+    curie_temperature = fields.curie_temperature, source = fields.source, note = fields.note }
+end
+
 --- A changed copy.
 function methods:with(changes)
   return build(object.changed(fields_of(self).spec, changes))

@@ -29,6 +29,9 @@ function object.class(name, methods)
     return label and ("%s %q"):format(name, label) or name
   end
   local function make(fields)
+    if fields.name ~= nil and type(fields.name) ~= "string" then
+      fail(name .. " name", fields.name, "text")
+    end
     local self = setmetatable({}, meta)
     store[self] = fields
     return self

@@ -21,8 +21,9 @@ local record_digits = 6
 
 local function cell_text(value, column)
   if value == nil then return "" end
-  if type(value) == "number" then return number.significant(value, column.digits or 4) end
-  return tostring(value)
+  if type(value) ~= "number" then return tostring(value) end
+  if column.digits == 0 then return number.fixed(value, 0) end
+  return number.significant(value, column.digits or 4)
 end
 
 local function check_columns(columns)
@@ -53,8 +54,9 @@ local function check_row(row, columns, label)
 end
 
 --- A table.
--- @tparam table spec `columns`: list of `{ name, unit, digits }`, digits (default 4) for `text` and
---   `markdown`; `rows`: list of lists of numbers in the column's unit, text, booleans or nil
+-- @tparam table spec `columns`: list of `{ name, unit, digits }`, significant digits (default 4; 0:
+--   whole numbers) for `text` and `markdown`; `rows`: list of lists of numbers in the column's unit,
+--   text, booleans or nil
 -- @treturn table with methods `text`, `markdown`, `csv`, `json`
 -- @raise an error table that names the row and column of what can't be written
 function write.table(spec)

@@ -3,7 +3,7 @@
 local tables = {}
 
 local columns = {
-  { name = "temperature", unit = "degC", digits = 3 },
+  { name = "temperature", unit = "degC", digits = 0 },
   { name = "current", unit = "A", digits = 4 },
   { name = "inductance", unit = "uH", digits = 4, scale = 1e6 },
   { name = "incremental inductance", unit = "uH", digits = 4, scale = 1e6 },

@@ -21,8 +21,9 @@ local function read_target(fields, at, what)
   }, at.incremental and "incremental_inductance" or "inductance"
 end
 
--- A short gap saturates the core and a long one has little permeance: between them inductance has a
--- maximum. The wanted gap lies beyond it, where the core still has room.
+-- A short gap saturates the core and a long one has little permeance: incremental inductance has a
+-- maximum between them (the chord inductance mostly falls all the way). The wanted gap lies beyond it,
+-- where the core still has room.
 local function peak_of(values)
   local peak = 1
   for i = 2, #values do
@@ -51,6 +52,9 @@ function inverse.gap(part, fields, at)
   local target, request, kind = read_target(fields, at, "gap_for")
   if not fields.gap_entries[1] then
     fail("number of gaps", 0, "at least one: gap 1 is the one that is changed")
+  end
+  if fields.gap_entries[1].permeance then
+    fail.text("gap 1 permeance", "the permeance of gap 1 is given, so its length changes nothing")
   end
   local geometry = fields.core.geometry
   local scale = geometry.window_height or geometry.effective_length / 4

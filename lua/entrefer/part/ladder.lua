@@ -211,7 +211,8 @@ function ladder.build(geometry, family, units, height, windings)
   for _, leg in ipairs(legs) do
     by_name[leg.name] = leg
     leg.units = units.by_leg[leg.name] or {}
-    leg.up = leg.name == first
+    -- A winding on both outer legs drives them the same way; around two legs it drives them in turn.
+    leg.up = leg.name == first or #legs == 3 and windings[1].legs[leg.name] ~= nil
     leg.gap_at = {}
     for i, z in ipairs(context.levels) do leg.gap_at[i] = gap_at(leg.units, z, height) end
     for _, winding in ipairs(windings) do leg.wound = leg.wound or winding.legs[leg.name] ~= nil end

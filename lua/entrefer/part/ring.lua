@@ -40,9 +40,12 @@ local function turns_on(low, high, windings)
   return turns
 end
 
+-- The real cross-section, so that flux density is the mean over it; the length that keeps the core's
+-- reluctance C1 (IEC 60205), a little more than the effective length.
 local function iron_of(geometry)
+  local area = geometry.outer_pole.width * geometry.outer_pole.depth
   return function(angle)
-    return builder.iron(geometry.effective_length * angle / (2 * math.pi), geometry.effective_area)
+    return builder.iron(geometry.c1 * area * angle / (2 * math.pi), area)
   end
 end
 

@@ -105,19 +105,25 @@ local function gap_record(solver, entry)
   return record
 end
 
+-- Turns around one window: of a winding on both outer legs, those of one leg.
+local function window_turns(part, winding)
+  local outer = part.topology == "three_leg" and winding.legs.left and winding.legs.right
+  return outer and winding.turns / 2 or winding.turns
+end
+
 -- With several windings the plain estimate counts the ampere-turns that aid winding 1.
 local function ampere_turns(part, current)
-  if type(current) == "number" then return part.windings[1].turns * current end
   local sum = 0
   for i, winding in ipairs(part.windings) do
     local _, share = next(winding.legs)
-    sum = sum + (share < 0 and -1 or 1) * winding.turns * current[i]
+    local one = type(current) == "number" and current or current[i]
+    sum = sum + (share < 0 and -1 or 1) * window_turns(part, winding) * one
   end
   return sum
 end
 
 local function estimate_record(part, current, law, result)
-  local turns = part.windings[1].turns
+  local turns = window_turns(part, part.windings[1])
   local plain = estimate.at(part.plain, turns, ampere_turns(part, current) / turns,
     law:permeability())
   local first = result.gaps[1]
