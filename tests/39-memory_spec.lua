@@ -1,14 +1,11 @@
 -- Memory of the C core: every allocation refused once, no allocation while solving, and networks from
 -- random bytes. The programs in tests/fuzz are built against the library that these specs run with.
+local process = require "tests.process"
+
 local has_compiler = os.execute("command -v ${CC:-cc} >/dev/null 2>&1")
 
--- A sanitized Lua module brings its runtime by preloading; programs link their own and must not.
-local clean = "env -u LD_PRELOAD "
-
 local function run(command)
-  local pipe = assert(io.popen(clean .. command .. " 2>&1", "r"))
-  local text = pipe:read "a"
-  local done, _, code = pipe:close()
+  local done, text, code = process.run(command)
   assert(done, ("%s ended with %s:\n%s"):format(command, tostring(code), text))
   return text
 end

@@ -1,13 +1,8 @@
 --- Hands a network to SciPy's root finder (tests/bench/network_scipy.py) in a process of its own.
 local json = require "entrefer.json"
+local run = require "tests.process".run
 
 local scipy = { python = "/usr/bin/python3" }
-
-local function run(command)
-  local pipe = assert(io.popen(command .. " 2>&1"))
-  local text = pipe:read "a"
-  return pipe:close(), text
-end
 
 --- Whether that Python has SciPy.
 function scipy.available()

@@ -2,6 +2,7 @@
 -- (tests/bench/support/e_section.edp). The library's part is 3-D; with a depth of 100 m what happens in
 -- front of and behind the core is below 1e-4 of the whole.
 local ef = require "entrefer"
+local run = require "tests.process".run
 
 local section = {}
 
@@ -13,15 +14,9 @@ section.shapes = {
   flat = { A = 52.15e-3, B = 9.85e-3, C = depth, D = 4e-3, E = 40.1e-3, F = 11.95e-3 },
 }
 
-local function read(command)
-  local pipe = assert(io.popen(command .. " 2>&1"))
-  local text = pipe:read "a"
-  return pipe:close() and text, text
-end
-
 --- Whether FreeFem++ can be called.
 function section.available()
-  return (read "command -v FreeFem++") and true or false
+  return (run "command -v FreeFem++")
 end
 
 local function elements(case, dimensions, divisions)
@@ -36,8 +31,8 @@ local function elements(case, dimensions, divisions)
   for name, value in pairs(arguments) do
     command[#command + 1] = ("-%s %.12g"):format(name, value)
   end
-  local text, output = read(table.concat(command, " "))
-  assert(text and text:find "permeance", output)
+  local done, text = run(table.concat(command, " "))
+  assert(done and text:find "permeance", text)
   local densities = {}
   for value in text:gmatch "density (%S+)" do densities[#densities + 1] = tonumber(value) end
   return tonumber(text:match "permeance (%S+)"), densities
