@@ -35,11 +35,59 @@ local function sensor_table(tried)
     rows = rows }
 end
 
+local function scaled(list, factor)
+  local out = {}
+  for i, value in ipairs(list) do out[i] = value * factor end
+  return out
+end
+
+local function limit(name, to, value)
+  return { name = name, kind = "limit", x = { 0, to }, y = { value, value } }
+end
+
+-- Inductance, flux densities and sensor voltage, hot, with the plain estimate and the limits.
+local function pictures(page, probe, req, raw, to)
+  local hot, part = raw[#raw], probe.part
+  local plain = part:solve { current = to, temperature = req.hot }.estimate
+  local x = { label = "current", unit = "A", from = 0, to = to }
+  if req.inductance then
+    local series = { limit("least, from the spec", to, req.inductance * 1e6),
+      limit("plain estimate", to, plain.inductance * 1e6) }
+    for _, one in ipairs(raw) do
+      series[#series + 1] = { name = ("%g degC"):format(one.temperature), x = one.sweep.current,
+        y = scaled(one.sweep.inductance, 1e6) }
+    end
+    page:plot("inductance", { title = "Inductance", x = x,
+      y = { label = "flux linkage / current", unit = "uH", from = 0 }, series = series,
+      alt = "Inductance against current at each temperature, with the least of the spec and the plain"
+        .. " estimate" })
+  end
+  page:plot("flux-density", { title = ("Flux density at %g degC"):format(req.hot), x = x,
+    y = { label = "flux density", unit = "mT", from = 0 },
+    alt = "Flux density of the core and in the gap against current, with the limit and the plain"
+      .. " estimate",
+    series = {
+      { name = "core, largest", x = hot.sweep.current, y = scaled(hot.sweep.core_flux_density, 1e3) },
+      { name = "middle of the gap", x = hot.sweep.current,
+        y = scaled(hot.sweep.gap_flux_density, 1e3) },
+      { name = "plain estimate", x = { 0, to }, y = { 0, plain.flux_density * 1e3 } },
+      limit("limit of the core", to, req.flux_density_limit * 1e3) } })
+  local voltages = {}
+  for i, one in ipairs(raw) do
+    voltages[i] = { name = ("%g degC"):format(one.temperature), x = one.sweep.current,
+      y = one.voltage }
+  end
+  page:plot("sensor-voltage", { title = "Sensor voltage", x = x, series = voltages,
+    y = { label = "voltage", unit = "V" },
+    alt = "Sensor voltage against current at each temperature" })
+end
+
 local function against_current(ef, page, probe, req)
   local sweep = { to = req.sweep.to and ef.quantity(req.sweep.to, "A", "sweep to")
     or 1.25 * req.current.trip, points = req.sweep.points or 11 }
-  local columns, rows = ef.design.against_current(probe, req.temperatures, sweep)
+  local columns, rows, raw = ef.design.against_current(probe, req.temperatures, sweep)
   page:heading("Against current and temperature")
+  pictures(page, probe, req, raw, sweep.to)
   page:table("against-current", { columns = columns, rows = rows })
 end
 
@@ -73,6 +121,8 @@ local function inductor_page(ef, page, req, result)
   page:value("winding resistance, hot", result.resistance, "ohm", ("dc, mean turn %.1f mm"):format(
     1e3 * result.mean_turn))
   page:value("sensor", design.chosen.sensor.name, nil, "generic class, replace by your supplier's data")
+  page:drawing("section", design.part, design.probe, "The part and its sensor, to scale. Winding block"
+    .. " by the bobbin's rule set.")
   local s = result.at_peak
   page:heading("Headline results at the peak current, hot")
   beside(ef, page, "inductance", s.inductance, s.estimate.inductance, "H")
@@ -157,6 +207,8 @@ local function run_concentrator(ef, page, req)
     s.estimate.flux_density, "T")
   page:value("where the ring saturates first", ("%.0f degrees from the gap"):format(
     math.deg(asked.facts.position)))
+  page:drawing("section", result.shown.part, result.probe, "The ring and its sensor, to scale: "
+    .. result.shown.name .. ".")
   page:heading("Sensors tried: " .. result.shown.name)
   page:table("sensors", sensor_table(result.shown.tried))
   if result.probe then against_current(ef, page, result.probe, req) end
@@ -188,6 +240,7 @@ return {
   },
   run = function(ef, input, page)
     local req = ef.design.requirements(input.spec.table, input.spec.folder)
+    page:retitle(req.title)
     if req.kind == "concentrator" then return run_concentrator(ef, page, req) end
     return run_inductor(ef, page, req)
   end,

@@ -1,8 +1,15 @@
---- The page a recipe writes its story on: headings, prose, values, tables, cautions, in order.
--- Rendered to plain text for the terminal and to Markdown; its tables also become files.
+--- The page a recipe writes its story on: headings, prose, values, tables, plots, drawings, cautions, in
+-- order. A page is plain data, so it can leave the state in which a recipe ran; it is checked again
+-- when it is read back (`page.from`), and rendered by `entrefer.render.*`.
 -- @module entrefer.page
+local drawing = require "entrefer.drawing"
 local fail = require "entrefer.fail"
+local html = require "entrefer.render.html"
+local markdown = require "entrefer.render.markdown"
+local plot = require "entrefer.plot"
 local quantity = require "entrefer.quantity"
+local svg = require "entrefer.svg"
+local text = require "entrefer.render.text"
 local write = require "entrefer.write"
 
 local page = {}
@@ -11,117 +18,170 @@ page.__index = page
 --- A new, empty page.
 -- @string title
 function page.new(title)
-  return setmetatable({ title = title, items = {}, tables = {} }, page)
+  return setmetatable({ title = tostring(title), items = {}, names = {} }, page)
 end
 
 local function add(self, item)
   self.items[#self.items + 1] = item
 end
 
---- A heading.
-function page:heading(text) add(self, { kind = "heading", text = text }) end
+local function words(value, field)
+  if type(value) ~= "string" then fail(field, value, "text") end
+  return value
+end
 
---- A paragraph.
-function page:prose(text) add(self, { kind = "prose", text = text }) end
+-- Names become files, so they are short and plain, and none is used twice.
+local function take_name(self, name)
+  if type(name) ~= "string" or not name:match("^[%w_-]+$") or #name > 64 then
+    fail("page name", name, "at most 64 letters, digits, - and _")
+  end
+  if self.names[name] then fail("page name", name, "a name not used before on the page") end
+  self.names[name] = true
+  return name
+end
+
+--- Gives the page another title: that of the project rather than of the recipe.
+function page:retitle(title) self.title = words(title, "page title") end
+
+--- A heading.
+function page:heading(heading) add(self, { kind = "heading", text = words(heading, "heading") }) end
+
+--- A paragraph. `**words**` are set off; `` `words` `` are code.
+function page:prose(paragraph) add(self, { kind = "prose", text = words(paragraph, "prose") }) end
 
 --- One quantity with its label; `note` stands behind it.
+-- @string label
+-- @param value number in SI units with `unit`, else text or a number shown as it is
+-- @string[opt] unit
+-- @string[opt] note
 function page:value(label, value, unit, note)
-  add(self, { kind = "value", label = label, note = note,
+  add(self, { kind = "value", label = words(label, "value label"), note = note,
     text = unit and quantity.format(value, unit, 4, { ascii = true }) or tostring(value) })
 end
 
 --- A caution, set off from the rest.
-function page:caution(text) add(self, { kind = "caution", text = text }) end
+function page:caution(caution) add(self, { kind = "caution", text = words(caution, "caution") }) end
 
 --- A table that also becomes the files NAME.csv, NAME.json, NAME.md and NAME.txt.
--- @string name for the files: letters, digits, "-" and "_"
+-- @string name for the files
 -- @tparam table spec `{ columns, rows }` as `entrefer.write` takes them
 -- @string[opt] caption
 function page:table(name, spec, caption)
-  if type(name) ~= "string" or not name:match("^[%w_-]+$") then
-    fail("table name", name, "letters, digits, - and _")
-  end
-  if self.tables[name] then fail("table name", name, "a name not used before on the page") end
   local made = write.table(spec)
-  self.tables[name] = made
-  add(self, { kind = "table", name = name, table = made, caption = caption })
+  add(self, { kind = "table", name = take_name(self, name), columns = made.columns,
+    rows = made.rows, caption = caption })
 end
 
--- Wraps a paragraph to a width, with a prefix on every line.
-local function wrap(text, width, prefix)
-  local lines, line = {}, prefix
-  for word in text:gmatch("%S+") do
-    if #line + #word + 1 > width and line ~= prefix then
-      lines[#lines + 1], line = line, prefix
+--- A plot (see `entrefer.plot`) that also becomes the file NAME.svg.
+-- @string name for the file
+-- @tparam table spec `{ title, x, y, series, alt }`
+function page:plot(name, spec)
+  plot.check(spec)
+  add(self, { kind = "plot", name = take_name(self, name), spec = spec })
+end
+
+--- The section of a part to scale, with its sensor; also the file NAME.svg. A custom core has no shape
+-- to draw: then nothing is added.
+-- @string name for the file
+-- @tparam part part
+-- @tparam[opt] probe probe
+-- @string[opt] caption
+function page:drawing(name, part, probe, caption)
+  local picture = drawing.section(part, probe)
+  if not picture then return end
+  add(self, { kind = "drawing", name = take_name(self, name), picture = picture,
+    caption = caption })
+end
+
+--- The page as plain data.
+-- @treturn table `{ title, items }`
+function page:plain()
+  return { title = self.title, items = self.items }
+end
+
+local readers = {
+  heading = function(self, item) self:heading(item.text) end,
+  prose = function(self, item) self:prose(item.text) end,
+  caution = function(self, item) self:caution(item.text) end,
+  value = function(self, item)
+    add(self, { kind = "value", label = words(item.label, "value label"),
+      text = words(item.text, "value"), note = item.note })
+  end,
+  table = function(self, item)
+    self:table(item.name, { columns = item.columns, rows = item.rows }, item.caption)
+  end,
+  plot = function(self, item) self:plot(item.name, item.spec) end,
+  drawing = function(self, item)
+    svg.write(item.picture) -- refuses what is no picture
+    add(self, { kind = "drawing", name = take_name(self, item.name), picture = item.picture,
+      caption = item.caption })
+  end,
+}
+
+--- Reads a page back from plain data, checking every item.
+-- @tparam table data from `page:plain`
+-- @treturn page
+-- @raise an error table for what a page doesn't hold
+function page.from(data)
+  local self = page.new(words(data.title, "page title"))
+  for i, item in ipairs(data.items) do
+    local reader = readers[item.kind]
+    if not reader then fail("page item " .. i, item.kind, "a kind of item that a page holds") end
+    for _, field in ipairs { "note", "caption" } do
+      if item[field] ~= nil then words(item[field], "page " .. field) end
     end
-    line = line .. (line == prefix and "" or " ") .. word
+    reader(self, item)
   end
-  lines[#lines + 1] = line
-  return table.concat(lines, "\n")
+  return self
 end
 
-local function value_lines(item)
-  return ("  %-38s %s%s"):format(item.label, item.text, item.note and "  (" .. item.note .. ")" or "")
-end
+--- The page as plain text for the terminal.
+function page:text() return text.render(self) end
 
-local as_text = {
-  heading = function(item) return "\n" .. item.text .. "\n" .. ("-"):rep(#item.text) end,
-  prose = function(item) return wrap(item.text, 100, "") end,
-  value = value_lines,
-  caution = function(item) return wrap(item.text, 100, "CAUTION  ") end,
-  table = function(item)
-    return (item.caption and item.caption .. "\n" or "") .. item.table:text()
-  end,
-}
+--- The page as Markdown; pictures are referred to as files beside it.
+function page:markdown() return markdown.render(self) end
 
-local as_markdown = {
-  heading = function(item) return "## " .. item.text end,
-  prose = function(item) return item.text end,
-  value = function(item)
-    return ("- %s: **%s**%s"):format(item.label, item.text,
-      item.note and " (" .. item.note .. ")" or "")
-  end,
-  caution = function(item) return "> **Caution.** " .. item.text end,
-  table = function(item)
-    return (item.caption and "*" .. item.caption .. "*\n\n" or "") .. item.table:markdown()
-  end,
-}
+--- The page as one self-contained HTML file.
+-- @tparam table pictures SVG text by name, from `page:pictures`
+-- @string[opt] why plots are missing from them
+function page:html(pictures, why) return html.render(self, pictures, why) end
 
-local function render(self, first, by_kind, separator)
-  local parts, before = { first }, nil
+--- SVG text of all plots and drawings, by name. All plots are drawn by one process.
+-- @treturn table
+-- @treturn string|nil why plots are missing from it
+function page:pictures()
+  local pictures, plots, names = {}, {}, {}
   for _, item in ipairs(self.items) do
-    -- Values stand close together, everything else has air around it.
-    local gap = item.kind == "value" and before == "value" and "\n" or separator
-    parts[#parts + 1] = gap .. by_kind[item.kind](item):gsub("\n+$", "")
-    before = item.kind
+    if item.kind == "plot" then
+      plots[#plots + 1], names[#names + 1] = item.spec, item.name
+    elseif item.kind == "drawing" then
+      pictures[item.name] = svg.write(item.picture)
+    end
   end
-  return table.concat(parts) .. "\n"
+  local drawn, why = plot.render(plots)
+  for i, picture in ipairs(drawn) do pictures[names[i]] = picture end
+  return pictures, why
 end
 
---- The page as plain text.
-function page:text()
-  return render(self, self.title .. "\n" .. ("="):rep(#self.title), as_text, "\n")
+local function table_files(item, files)
+  local made = write.table { columns = item.columns, rows = item.rows }
+  for _, kind in ipairs { { "txt", "text" }, { "md", "markdown" }, { "csv", "csv" },
+    { "json", "json" } } do
+    files[#files + 1] = { item.name .. "." .. kind[1], made[kind[2]](made) }
+  end
 end
 
---- The page as Markdown.
-function page:markdown()
-  return render(self, "# " .. self.title, as_markdown, "\n\n")
-end
-
---- Writes the page and its tables below a folder, which is made when it isn't there.
+--- Writes the page (text, Markdown, HTML), its tables and pictures into a folder. Everything is rendered
+-- before the first file is written.
 -- @string folder
 -- @treturn table list of the files written
 function page:save(folder)
-  local files = { { "report.txt", self:text() }, { "report.md", self:markdown() } }
-  local names = {}
-  for name in pairs(self.tables) do names[#names + 1] = name end
-  table.sort(names)
-  for _, name in ipairs(names) do
-    local made = self.tables[name]
-    files[#files + 1] = { name .. ".txt", made:text() }
-    files[#files + 1] = { name .. ".md", made:markdown() }
-    files[#files + 1] = { name .. ".csv", made:csv() }
-    files[#files + 1] = { name .. ".json", made:json() }
+  local pictures, why = self:pictures()
+  local files = { { "report.txt", self:text() }, { "report.md", self:markdown() },
+    { "report.html", self:html(pictures, why) } }
+  for _, item in ipairs(self.items) do
+    if item.kind == "table" then table_files(item, files) end
+    if pictures[item.name] then files[#files + 1] = { item.name .. ".svg", pictures[item.name] } end
   end
   local written = {}
   for i, file in ipairs(files) do

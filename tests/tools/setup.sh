@@ -10,6 +10,7 @@ liblapacke|run|LAPACKE, the linear algebra that the C core calls
 libopenblas0|run|a fast BLAS and LAPACK below LAPACKE
 lua-argparse|run|the command's argument parser
 lua-filesystem|run|folders, for the command and its reports
+gnuplot-nox|run|draws the plots of a report
 gcc|build|the C compiler
 libc6-dev|build|the C library's headers
 pkg-config|build|tells the compiler where Lua and LAPACKE are
@@ -25,6 +26,7 @@ luarocks|reference|builds the rock in a folder of its own
 ngspice|reference|circuit simulator that the exported models are run in
 python3-scipy|reference|independent numerical reference
 librsvg2-bin|reference|turns the drawings into pictures
+tidy|reference|checks the HTML of a report
 freefem++|reference|finite-element reference solutions
 TABLE
 }
