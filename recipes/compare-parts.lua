@@ -35,7 +35,7 @@ return {
     { name = "turns_a", unit = "1", default = 12, min = 1 },
     { name = "turns_b", unit = "1", default = 9, min = 1 },
     { name = "gap_a", unit = "m", default = "2.0 mm" }, { name = "gap_b", unit = "m", default = "2.4 mm" },
-    { name = "current", unit = "A", default = "25 A" },
+    { name = "current", unit = "A", default = "25 A", min = "1 mA" },
     { name = "temperature", unit = "degC", default = 100 },
   },
   results = { { name = "inductance_a", unit = "H" }, { name = "inductance_b", unit = "H" },

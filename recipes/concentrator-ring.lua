@@ -22,7 +22,7 @@ return {
     { name = "outer", unit = "m", default = "38 mm" }, { name = "inner", unit = "m", default = "26 mm" },
     { name = "height", unit = "m", default = "8 mm" }, { name = "gap", unit = "m", default = "4.5 mm" },
     { name = "material", default = "PW3b" },
-    { name = "current", unit = "A", default = "300 A", help = "largest current to be read" },
+    { name = "current", unit = "A", default = "300 A", min = "1 mA", help = "largest current to be read" },
     { name = "temperature", unit = "degC", default = 85 },
   },
   results = { { name = "flux_density_per_ampere", unit = "T/A" },
@@ -46,10 +46,11 @@ return {
     end
     page:heading("Arrangements")
     page:table("arrangements", { columns = { { name = "arrangement" },
-      { name = "in the gap", unit = "uT/A", digits = 4 },
-      { name = "ring over gap", digits = 3 }, { name = "ring at the current", unit = "mT", digits = 3 },
-      { name = "shortfall", unit = "%", digits = 3 },
-      { name = "off the plain estimate", unit = "%", digits = 3 } }, rows = rows })
+      { name = "in the gap, small current", unit = "uT/A", digits = 4 },
+      { name = "ring over gap, small current", digits = 3 },
+      { name = "ring at the current", unit = "mT", digits = 3 },
+      { name = "shortfall at the current", unit = "%", digits = 3 },
+      { name = "off the plain estimate, at the current", unit = "%", digits = 3 } }, rows = rows })
     page:prose(("The back of the ring carries %.1f times the flux density of the gap: what the gap sees"
       .. " is only the part of the flux that has not leaked on the way. mu0 I / gap says nothing about"
       .. " the ring's saturation."):format(result.ratio))

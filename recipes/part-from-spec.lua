@@ -72,6 +72,14 @@ local function pictures(page, probe, req, raw, to)
         y = scaled(hot.sweep.gap_flux_density, 1e3) },
       { name = "plain estimate", x = { 0, to }, y = { 0, plain.flux_density * 1e3 } },
       limit("limit of the core", to, req.flux_density_limit * 1e3) } })
+  local around = part:path { current = req.current.trip, temperature = req.hot }
+  local along = scaled(around.distance, 1e3)
+  page:plot("flux-density-along-the-path", { title = "Core flux density along the path, trip current",
+    x = { label = "distance along the path", unit = "mm", from = 0, to = along[#along] },
+    y = { label = "mean over the section", unit = "mT", from = 0 },
+    alt = "Flux density of the core along the magnetic path at the trip current, hot, with its limit",
+    series = { { name = "core", x = along, y = scaled(around.flux_density, 1e3) },
+      limit("limit of the core", along[#along], req.flux_density_limit * 1e3) } })
   local voltages = {}
   for i, one in ipairs(raw) do
     voltages[i] = { name = ("%g degC"):format(one.temperature), x = one.sweep.current,
@@ -100,6 +108,8 @@ local function cautions(page)
   page:caution("Insulation, creepage and clearance (IEC 60664-1; IEC 60664-4 above 30 kHz; the"
     .. " product's own standard) must be confirmed to the code in force by a qualified person."
     .. " Ferrite counts as a conductor.")
+  page:caution("Losses are not part of this flow: a long gap with a large ripple heats the copper near"
+    .. " it; keep the winding about one gap length away.")
   page:caution("Cores and windings get hot. Grinding ferrite makes dust: keep it out of lungs and"
     .. " eyes. Computed from a model; not validated on hardware.")
 end
@@ -123,6 +133,10 @@ local function inductor_page(ef, page, req, result)
   page:value("sensor", design.chosen.sensor.name, nil, "generic class, replace by your supplier's data")
   page:drawing("section", design.part, design.probe, "The part and its sensor, to scale. Winding block"
     .. " by the bobbin's rule set.")
+  page:prose(("Judged with the gap off by its tolerance of %.2f mm either way, each limit at its worse"
+    .. " end. The network itself is good to about 1 %% for a centre gap in two dimensions; open sides"
+    .. " and fringing in three add a few per cent: leave that much margin or measure."):format(
+    1e3 * req.gap.tolerance))
   local s = result.at_peak
   page:heading("Headline results at the peak current, hot")
   beside(ef, page, "inductance", s.inductance, s.estimate.inductance, "H")

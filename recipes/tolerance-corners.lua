@@ -29,12 +29,19 @@ return {
     { name = "permeability_tolerance", unit = "1", default = 0.25, min = 0, max = 0.9,
       help = "share, either way" },
     { name = "cold", unit = "degC", default = -20 }, { name = "hot", unit = "degC", default = 100 },
-    { name = "current", unit = "A", default = "12 A" },
+    { name = "current", unit = "A", default = "12 A", min = "1 mA" },
   },
   results = { { name = "inductance_least", unit = "H" }, { name = "inductance_most", unit = "H" },
     { name = "reading_spread", unit = "1", help = "(most - least) / nominal" },
     { name = "core_flux_density_most", unit = "T" } },
   run = function(ef, input, page)
+    if input.cold > input.hot then
+      error(("input cold is %g; allowed: at most hot, %g degC"):format(input.cold, input.hot), 0)
+    end
+    if input.gap_tolerance >= input.gap then
+      error(("input gap_tolerance is %g; allowed: below the gap, %g m"):format(input.gap_tolerance,
+        input.gap), 0)
+    end
     local rows = {}
     for _, gap in ipairs { input.gap - input.gap_tolerance, input.gap + input.gap_tolerance } do
       for _, mu in ipairs { 1 - input.permeability_tolerance, 1 + input.permeability_tolerance } do

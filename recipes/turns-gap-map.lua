@@ -29,23 +29,31 @@ return {
     { name = "core", default = "ETD 44/22/15", help = "a size of the catalogue" },
     { name = "material", default = "PW3b", help = "a material card" },
     { name = "sensor", default = "linear Hall, 300 mT", help = "a sensor class" },
-    { name = "inductance", unit = "H", default = "40 uH", help = "least, at the current" },
-    { name = "current", unit = "A", default = "20 A", help = "the largest current that must hold" },
+    { name = "inductance", unit = "H", default = "40 uH", min = "1 nH", help = "least, at the current" },
+    { name = "current", unit = "A", default = "20 A", min = "1 mA", help = "largest that must hold" },
     { name = "temperature", unit = "degC", default = 100, help = "of the core" },
-    { name = "flux_density", unit = "T", default = "0.32 T", help = "most in the core" },
-    { name = "clearance", unit = "m", default = "0.4 mm", help = "adhesive, films, assembly" },
-    { name = "gap_from", unit = "m", default = "0.5 mm" }, { name = "gap_to", unit = "m", default = "4 mm" },
-    { name = "turns_from", unit = "1", default = 8 }, { name = "turns_to", unit = "1", default = 22 },
+    { name = "flux_density", unit = "T", default = "0.32 T", min = "1 mT", help = "most in the core" },
+    { name = "clearance", unit = "m", default = "0.4 mm", min = 0, help = "adhesive, films, assembly" },
+    { name = "gap_from", unit = "m", default = "0.5 mm", min = "1 um" },
+    { name = "gap_to", unit = "m", default = "4 mm", min = "1 um" },
+    { name = "turns_from", kind = "integer", default = 8, min = 1, max = 500 },
+    { name = "turns_to", kind = "integer", default = 22, min = 1, max = 500 },
   },
   results = { { name = "turns", unit = "1", help = "fewest that keep all limits; 0 for none" },
     { name = "gap", unit = "m" }, { name = "feasible", unit = "1", help = "pairs that keep all limits" } },
   run = function(ef, input, page)
+    for _, name in ipairs { "gap", "turns" } do
+      local from, to = input[name .. "_from"], input[name .. "_to"]
+      if from >= to then
+        error(("input %s_from is %g; allowed: below %s_to, %g"):format(name, from, name, to), 0)
+      end
+    end
     local sensor = ef.sensor(input.sensor)
     local gaps = steps(input.gap_from, input.gap_to, 8)
     local columns, rows, points = { { name = "turns", digits = 0 } }, {}, {}
     for k, length in ipairs(gaps) do columns[k + 1] = { name = ("%.2f mm"):format(length * 1e3) } end
     local best, feasible = nil, 0
-    for turns = math.ceil(input.turns_from), math.floor(input.turns_to) do
+    for turns = input.turns_from, input.turns_to do
       local row = { turns }
       for k, length in ipairs(gaps) do
         local lost, s, field = judge(ef, input, sensor, turns, length)

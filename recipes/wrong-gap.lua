@@ -20,7 +20,7 @@ return {
     { name = "turns", unit = "1", default = 20, min = 1, max = 1000, help = "turns on the centre leg" },
     { name = "drawn", unit = "m", default = "1.5 mm", help = "the gap on the drawing" },
     { name = "made", unit = "m", default = "1.72 mm", help = "the gap that was ground or sawn" },
-    { name = "current", unit = "A", default = "12 A", help = "operating current" },
+    { name = "current", unit = "A", default = "12 A", min = "1 mA", help = "operating current" },
     { name = "temperature", unit = "degC", default = 85, help = "of the core" },
   },
   results = {

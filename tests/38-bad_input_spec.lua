@@ -33,6 +33,35 @@ local function refuses_whole(field, value, allowed, f, ...)
     ("expected %q is %q; allowed: %q, got %q"):format(err.field, value, allowed, err.message))
 end
 
+describe("a spec for the flow", function()
+  local function read(changes)
+    local s = { current = { nominal = 3 }, inductance = 1e-4, material = "PW3b", cores = { "E 25/13/7" } }
+    for key, value in pairs(changes) do s[key] = value end
+    return ef.design.requirements(s)
+  end
+
+  it("is refused by field where a value has the wrong kind or order", function()
+    refuses_whole("temperatures", "25", "a list", read, { temperatures = 25 })
+    refuses_whole("sensing candidates", '"all"', "a list", read, { sensing = { candidates = "all" } })
+    refuses_whole("sensing range_use", "0.8", "a pair", read, { sensing = { range_use = 0.8 } })
+    refuses_whole("sensing range_use, least", "0.8", "below the most, 0.3", read,
+      { sensing = { range_use = { 0.8, 0.3 } } })
+    refuses_whole("limits nonlinearity", "5", "at most 1", read, { limits = { nonlinearity = "500 %" } })
+    refuses_whole("title", "5", "text", read, { title = 5 })
+    refuses("^inductance$", "both given", read, { converter = { high = 24, low = 12, frequency = 1e5,
+      ripple = 1 } })
+  end)
+
+  it("names a known word only where it is close", function()
+    refuses("^core$", '"E 42/21/16" is unknown, did you mean "E 42/21/15"', ef.core, "E 42/21/16")
+    refuses("^core$", '"/etc/passwd" is unknown; allowed', ef.core, "/etc/passwd")
+  end)
+
+  it("gets limits with their unit", function()
+    refuses("^sensing clearance$", "at least 0 m$", read, { sensing = { clearance = -1e-3 } })
+  end)
+end)
+
 describe("numbers that are none", function()
   local bad = { { nan, "%-?nan", "a finite number" }, { infinity, "inf", "a finite number" },
     { -infinity, "%-inf", "a finite number" }, { -1, "%-1", "above 0" }, { 0, "0", "above 0" } }

@@ -164,6 +164,56 @@ describe("concentrator-ring", function()
   end)
 end)
 
+describe("choose-core", function()
+  it("takes the smallest size whose numbers keep the limits", function()
+    local r, _, table_of = run("choose-core")
+    local s = ef.part { core = r.core, material = "PW3b", gaps = { { length = r.gap } },
+      windings = { { turns = r.turns } } }:solve { current = 15, temperature = 100 }
+    near(60e-6, s.inductance, 2 * six_digits)
+    assert.is_true(s.core_flux_density <= 0.31)
+    local works, smallest = 0, math.huge
+    for _, row in ipairs(table_of "cores") do
+      if row[8] == "works" then
+        works = works + 1
+        smallest = math.min(smallest, row[2])
+      end
+    end
+    assert.equal(r.works, works)
+    near(smallest, ef.core(r.core).geometry.effective_volume * 1e6, six_digits)
+    -- One turn fewer saturates: the count is the fewest.
+    local fewer = ef.part { core = r.core, material = "PW3b", gaps = { { length = r.gap } },
+      windings = { { turns = r.turns - 1 } } }
+    local length, gapped = ef.try(fewer.gap_for, fewer, { inductance = 60e-6, current = 15,
+      temperature = 100 })
+    assert.is_true(not length
+      or gapped:solve { current = 15, temperature = 100 }.core_flux_density > 0.31)
+  end)
+
+  it("refuses a family there isn't", function()
+    local code, _, err = command.entrefer("run choose-core family=EDT")
+    assert.equal(1, code)
+    assert.is_truthy(err:find("ETD", 1, true), err)
+  end)
+end)
+
+describe("pick-sensor", function()
+  it("picks by the rules, worked again here", function()
+    local r, _, table_of = run("pick-sensor")
+    local sensor = ef.sensor(r.sensor)
+    local part = ef.part { core = "ETD 44/22/15", material = "PW3b", gaps = { { length = 2.2e-3 } },
+      windings = { { turns = 14 } } }
+    local function field(current)
+      return part:solve { current = current, temperature = 100 }.gaps[1].centre_flux_density
+    end
+    near(field(12) / sensor.range, r.range_used, six_digits)
+    assert.is_true(field(20) <= 0.8 * sensor.range and field(12) >= 0.3 * sensor.range)
+    assert.is_true(sensor:room().max + 0.4e-3 <= 2.2e-3)
+    assert.is_true(sensor.bandwidth >= 100e3)
+    assert.equal(#ef.sensors(), #table_of "sensors")
+    for _, row in ipairs(table_of "sensors") do assert.equal(row[2] == "refused", row[4] ~= "") end
+  end)
+end)
+
 describe("every recipe", function()
   it("runs on its defaults, is described, and refuses an unknown input", function()
     local lfs = require "lfs"

@@ -1,4 +1,5 @@
 #include "binding.h"
+#include "limits.h"
 
 #include <math.h>
 
@@ -9,10 +10,20 @@ static void *resize_with_lua(void *user, void *block, size_t old_size, size_t ne
   return allocate(lua_user, block, old_size, new_size);
 }
 
+/* In an isolated state a long solve ends when the state's time is up. */
+static int stop_when_late(void *user, double share) {
+  (void)share;
+  return efl_limits_late(user);
+}
+
 void efl_context(lua_State *L, ef_context *context) {
   ef_context_init(context);
   context->allocator.resize = resize_with_lua;
   context->allocator.user = L;
+  efl_limits *limits = efl_limits_of(L);
+  if (!limits) return;
+  context->progress = stop_when_late;
+  context->progress_user = limits;
 }
 
 static int error_to_string(lua_State *L) {
@@ -46,6 +57,10 @@ int efl_raise_value(lua_State *L, const char *field, double value, const char *a
   ef_context context;
   ef_context_init(&context);
   return efl_raise(L, ef_fail(&context, EF_BAD_VALUE, field, value, allowed), &context);
+}
+
+void efl_push_error(lua_State *L, const char *code, const char *field, const char *message) {
+  push_error(L, code, field, NAN, NULL, message);
 }
 
 int efl_raise_text(lua_State *L, const char *field, const char *message) {

@@ -18,6 +18,9 @@ int efl_raise(lua_State *L, ef_status status, const ef_context *context);
 int efl_raise_value(lua_State *L, const char *field, double value, const char *allowed);
 int efl_raise_text(lua_State *L, const char *field, const char *message);
 
+/* Pushes such a table with a code of its own. */
+void efl_push_error(lua_State *L, const char *code, const char *field, const char *message);
+
 /* Number in field `name` of the table at `index`; raises when missing or no finite number.
  * `what` prefixes the field's name in the message (may be ""). */
 double efl_number(lua_State *L, int index, const char *what, const char *name);
@@ -49,5 +52,9 @@ void efl_open_gap(lua_State *L);
 void efl_open_ring(lua_State *L);
 void efl_open_network(lua_State *L);
 void efl_open_root(lua_State *L);
+void efl_open_digest(lua_State *L);
+void efl_open_state(lua_State *L);
+void efl_open_read_below(lua_State *L);
+void efl_open_child(lua_State *L);
 
 #endif

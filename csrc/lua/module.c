@@ -15,5 +15,9 @@ int luaopen_entrefer_core(lua_State *L) {
   efl_open_gap(L);
   efl_open_ring(L);
   efl_open_network(L);
+  efl_open_digest(L);
+  efl_open_state(L);
+  efl_open_read_below(L);
+  efl_open_child(L);
   return 1;
 }

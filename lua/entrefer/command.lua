@@ -1,6 +1,8 @@
---- The command line: `entrefer list | describe RECIPE | run RECIPE name=value ... --out DIR`.
+--- The command line: `entrefer list | describe RECIPE | check RECIPE | run RECIPE name=value ... --out
+-- DIR | compare OLD NEW`.
 -- @module entrefer.command
 local argparse = require "argparse"
+local compare = require "entrefer.compare"
 local lfs = require "lfs"
 local quantity = require "entrefer.quantity"
 local recipe = require "entrefer.recipe"
@@ -16,6 +18,11 @@ local function parser()
   p:command("list", "List the recipes that come with the library.")
   local describe = p:command("describe", "Show what a recipe does, its inputs and results.")
   describe:argument("recipe", "Recipe file, or the name of one that comes with the library.")
+  local check = p:command("check", "Check a recipe without running its flow.")
+  check:argument("recipe", "Recipe file, or the name of one that comes with the library.")
+  local compared = p:command("compare", "Say what moved between two runs, and by how much.")
+  compared:argument("old", "Folder of the older run (--out), or its results.json.")
+  compared:argument("new", "Folder of the newer run, or its results.json.")
   local run = p:command("run", "Run a recipe.")
   run:argument("recipe", "Recipe file, or the name of one that comes with the library.")
   run:argument("inputs", "Inputs as name=value, e.g. spec=my/spec.lua or current=\"12 A\".")
@@ -104,20 +111,36 @@ end
 
 local function run(options, here)
   local loaded = recipe.load(find_recipe(options.recipe, here))
-  local results, page = recipe.run(loaded, read_inputs(options.inputs))
+  local results, page, provenance = recipe.run(loaded, read_inputs(options.inputs),
+    { process = true })
   io.write(page:text())
   show_results(loaded, results)
   if options.out then
     make_folder(options.out)
     local written = page:save(options.out)
-    local path = options.out .. "/results.json"
-    write.file(path, write.json(results))
-    written[#written + 1] = path
+    for _, record in ipairs { { "results", results }, { "provenance", provenance } } do
+      local path = ("%s/%s.json"):format(options.out, record[1])
+      write.file(path, write.json(record[2]))
+      written[#written + 1] = path
+    end
     io.write("\nWritten\n  ", table.concat(written, "\n  "), "\n")
   end
 end
 
-local commands = { list = list, describe = describe, run = run }
+local function check(options, here)
+  local path = find_recipe(options.recipe, here)
+  local loaded = recipe.load(path)
+  io.write(("%s: good, %d inputs, %d results\n"):format(path, #loaded.inputs, #loaded.results))
+end
+
+local function compare_runs(options)
+  local found = compare.runs(options.old, options.new)
+  io.write(found.results:text(), ("\n%d of %d results moved\n"):format(found.moved,
+    #found.results.rows))
+  if #found.provenance.rows > 0 then io.write("\n", found.provenance:text()) end
+end
+
+local commands = { check = check, compare = compare_runs, list = list, describe = describe, run = run }
 
 --- Runs the command.
 -- @tparam table arguments the words after the command's name

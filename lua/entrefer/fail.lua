@@ -43,6 +43,11 @@ function fail.text(field, message)
   raise("bad_value", field, nil, nil, message)
 end
 
+--- Raises a sentence about a field with a code of its own.
+function fail.coded(code, field, message)
+  raise(code, field, nil, nil, message)
+end
+
 -- Number of single-letter edits between two words (Levenshtein distance).
 local function distance(a, b)
   local row = {}
@@ -60,12 +65,14 @@ end
 
 local function plain(word) return (word:lower():gsub("[%s_]+", " ")) end
 
--- The known name with the fewest edits, letter case and spaces aside.
+-- The known name with the fewest edits, letter case and spaces aside; none beyond three edits or half of
+-- the name: such a suggestion would only puzzle.
 local function nearest(name, known)
-  local best, least
+  local wanted = plain(name):sub(1, 64)
+  local best, least = nil, math.max(3, #wanted / 2)
   for _, candidate in ipairs(known) do
-    local edits = distance(plain(name):sub(1, 64), plain(candidate):sub(1, 64))
-    if not least or edits < least then best, least = candidate, edits end
+    local edits = distance(wanted, plain(candidate):sub(1, 64))
+    if edits < least or not best and edits == least then best, least = candidate, edits end
   end
   return best
 end

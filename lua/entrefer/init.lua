@@ -9,6 +9,8 @@
 --    local ef = require "entrefer"
 --
 -- @module entrefer
+local bobbin = require "entrefer.bobbin"
+local catalogue = require "entrefer.catalogue"
 local concentrator = require "entrefer.design.concentrator"
 local core = require "entrefer.core"
 local curve = require "entrefer.curve"
@@ -19,9 +21,12 @@ local network = require "entrefer.network"
 local part = require "entrefer.part"
 local probe = require "entrefer.probe"
 local quantity = require "entrefer.quantity"
+local recipe = require "entrefer.recipe"
 local requirements = require "entrefer.design.requirements"
+local sensing = require "entrefer.design.sensing"
 local sensor = require "entrefer.sensor"
 local shape = require "entrefer.shape"
+local stackup = require "entrefer.stackup"
 local tables = require "entrefer.design.tables"
 local wire = require "entrefer.wire"
 
@@ -54,6 +59,12 @@ return {
   sensors = sensor.names,
   --- A sensor placed in a part's gap.
   probe = probe.new,
+  --- The stack of a sensor in a gap: smallest gap, place of the element, ways out.
+  stack_up = stackup.new,
+  --- A coil former by rules: room for wire, mean turn.
+  bobbin = bobbin.new,
+  --- Finding cores, materials, sensors and wires: `find(query)`; own folders of cards: `load(folder)`.
+  catalogue = catalogue,
   --- Permeance of one gap by a named method: `ef.gap_permeance("conformal", geometry)`.
   gap_permeance = core.gap,
   --- Names of the gap methods.
@@ -63,13 +74,17 @@ return {
   --- Writes a quantity with an engineering prefix: `ef.format(1.2e-3, "m")`.
   format = quantity.format,
   --- The steps of a design flow: `requirements(spec, folder)`, `inductor(req)`, `concentrator(req)`,
-  -- `against_current(probe, temperatures, sweep)`.
+  -- `against_current(probe, temperatures, sweep)`, `pick_sensor(facts, rules)`.
   design = {
     requirements = requirements.read,
     inductor = inductor.run,
     concentrator = concentrator.run,
     against_current = tables.against_current,
+    pick_sensor = sensing.pick,
   },
+  --- Runs a recipe, a path or its text, in a state of its own: `ef.run_recipe(recipe, inputs, options)`
+  -- gives results, page and provenance; see `entrefer.recipe`.
+  run_recipe = recipe.run_file,
   --- `ef.try(f, ...)`: f's results, or nil and the error table.
   try = fail.try,
 }

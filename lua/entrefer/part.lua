@@ -8,6 +8,7 @@
 --    local s = part:solve{ current = 12, temperature = 85 }
 --
 -- @module entrefer.part
+local bobbin = require "entrefer.bobbin"
 local core_solver = require "entrefer.core"
 local derivatives = require "entrefer.part.derivatives"
 local estimate = require "entrefer.part.estimate"
@@ -18,6 +19,7 @@ local ladder = require "entrefer.part.ladder"
 local loop = require "entrefer.part.loop"
 local material = require "entrefer.material"
 local object = require "entrefer.object"
+local path = require "entrefer.part.path"
 local quantity = require "entrefer.quantity"
 local ring = require "entrefer.part.ring"
 local shape = require "entrefer.shape"
@@ -28,7 +30,6 @@ local part = {}
 
 local fields = { "core", "material", "gaps", "windings", "bobbin", "name", "note" }
 local with_fields = { "turns", "gap", table.unpack(fields) }
-local bobbin_default = { wall = 0.8e-3, clearance = 0.2e-3, flange = 0.8e-3 }
 
 local methods = {}
 local make, fields_of = object.class("part", methods)
@@ -38,12 +39,11 @@ local function list_of(value, field)
   return value or {}
 end
 
-local function read_bobbin(bobbin)
-  local read = {}
-  fail.fields(bobbin or {}, { "wall", "clearance", "flange" }, "bobbin")
-  for name, default in pairs(bobbin_default) do
-    local value = (bobbin or {})[name]
-    read[name] = value and quantity.read(value, "m", "bobbin " .. name, { min = 0 }) or default
+local function read_bobbin(given, core_set)
+  fail.fields(given or {}, { "wall", "clearance", "flange" }, "bobbin")
+  local read = bobbin.defaults(core_set)
+  for name, value in pairs(given or {}) do
+    read[name] = quantity.read(value, "m", "bobbin " .. name, { min = 0 })
   end
   return read
 end
@@ -108,11 +108,13 @@ end
 --   `core`: from `ef.core`, or what it takes; `material`: from `ef.material`, or what it takes;
 --   `gaps`: list of `{ leg = "centre" | "left" | "right" | "outer" | "all" (a ring needs none),
 --   length (m, of each gap), kind = "ground" | "spacer" | "sawn", count = 1, position (m from the
---   leg's middle), tolerance (m), pocket = { diameter, depth } or { diameter, through = true },
+--   leg's middle), tolerance (m, for the flow and records), pocket = { diameter, depth } or
+--   { diameter, through = true },
 --   method = "conformal" | "handbook" | "added length" | "plain", or permeance (H) given }`;
 --   `windings`: list of `{ turns, leg, wire, span = { from, to } (m), reverse, name; on a ring angle
 --   and extent (rad) }`: positive current in any winding aids winding 1 unless `reverse`;
---   `bobbin` = { wall, clearance, flange } (m; default 0.8, 0.2, 0.8 mm); `name`, `note`
+--   `bobbin` = { wall, clearance, flange } (m; default: the family's usual, see `entrefer.bobbin`);
+--   `name`, `note`
 -- @treturn part with `core`, `material`, `gap_entries`, `windings`, `fill` (share of the window),
 --   `core_mass` (kg, when the material gives its density)
 -- @raise an error table naming the field: unknown legs, a gap longer than its leg, a build that does
@@ -120,9 +122,10 @@ end
 function part.new(spec)
   if type(spec) ~= "table" then fail("part", spec, "a table") end
   fail.fields(spec, fields, "part")
-  local self = { spec = object.snapshot(spec), fields_of = fields_of, name = spec.name, note = spec.note,
-    core = shape.of(spec.core, "core"), material = material.of(spec.material, "material"),
-    bobbin = read_bobbin(spec.bobbin) }
+  local self = { spec = object.snapshot(spec), fields_of = fields_of, name = spec.name,
+    note = spec.note, core = shape.of(spec.core, "core"),
+    material = material.of(spec.material, "material") }
+  self.bobbin = read_bobbin(spec.bobbin, self.core)
   self.topology = self.core.geometry.topology or "loop"
   self.gap_entries = read_gaps(list_of(spec.gaps, "gaps"), self.core)
   if self.topology == "ring" or self.topology == "loop" then
@@ -185,7 +188,7 @@ end
 --   matrix for several windings), `incremental_inductance` (H), `energy`, `coenergy` (J),
 --   `limbs[name] = { flux_density (T, mean over the section, largest along the limb), position (m
 --   from the leg's middle; ring: rad from the gap), mean (T, along the limb), drop (A) }`,
---   `gaps[i] = { flux_density (T, mean over the pole face), centre_flux_density (T, in the middle),
+--   `gaps[i] = { flux_density (T, mean over the pole face), centre_flux_density (T, on the axis),
 --   flux (Wb), drop (A), force (N) }`, `core_flux_density` (T, largest of the limbs) and
 --   `core_flux_density_limb`, `estimate` (plain series circuit, with `ratio`), `error`, `method`,
 --   `warnings`
@@ -200,6 +203,14 @@ end
 --   linkage, both inductances, core and gap flux density)
 function methods:sweep(at)
   return solve.sweep(fields_of(self), at)
+end
+
+--- The core's flux density along the magnetic path; see `entrefer.part.path`.
+-- @tparam table at `current`, `temperature`
+-- @treturn table struct of arrays `distance` (m), `flux_density` (T), `limb`
+function methods:path(at)
+  fail.fields(at, { "current", "temperature" }, "path")
+  return path.along(fields_of(self), at)
 end
 
 --- Derivatives of the results; see `entrefer.part.derivatives`.

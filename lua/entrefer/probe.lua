@@ -34,9 +34,16 @@ local function find_unit(part, spec)
   fail.unknown("probe leg", tostring(spec.leg), legs)
 end
 
-local function check_room(sensor, unit)
+-- Beside the pole the package has all the room it wants.
+local function beside_pole(unit, place)
+  local pole = unit.pole
+  if pole.shape == "round" then return place.x ^ 2 + place.y ^ 2 > (pole.width / 2) ^ 2 end
+  return math.abs(place.x) > pole.width / 2 or math.abs(place.y) > pole.depth / 2
+end
+
+local function check_room(sensor, unit, place)
   local room = sensor:room()
-  if room.max > unit.local_length then
+  if room.max > unit.local_length and not beside_pole(unit, place) then
     fail("sensor thickness", room.max, ("at most %.4g m, the clear height of the gap%s"):format(
       unit.local_length, unit.entry.pocket and " with its pocket" or ""))
   end
@@ -49,7 +56,7 @@ local function profile(part, unit, place)
     return 1 + unit.radial_slope * x, math.abs(x) <= unit.pole.width / 4
       and math.abs(y) <= unit.pole.depth / 4
   end
-  local pocket = unit.entry.pocket
+  local pocket = unit.pocket
   local radius = math.sqrt(x * x + y * y)
   if pocket and radius < pocket.diameter / 2 then
     return core.pocket_field(pocket, unit.length, radius, z) / unit.centre_field, true
@@ -73,12 +80,12 @@ function probe.new(spec)
   local part = part_module.of(spec.part, "part")
   local sensor = sensor_module.of(spec.sensor, "sensor")
   local unit, index = find_unit(part, spec)
-  check_room(sensor, unit)
   local place = {}
   fail.fields(spec.position or {}, { "x", "y", "z" }, "position")
   for _, axis in ipairs { "x", "y", "z" } do
     place[axis] = quantity.read((spec.position or {})[axis] or 0, "m", "position " .. axis)
   end
+  check_room(sensor, unit, place)
   if math.abs(place.z) > unit.local_length / 2 then
     fail("position z", place.z, ("within %.4g m of the gap's middle"):format(unit.local_length / 2))
   end

@@ -47,14 +47,15 @@ local function parse(given_text, unit, field)
   return value * given.factor / wanted.factor
 end
 
-local function check_limits(value, field, options)
+local function check_limits(value, unit, field, options)
   if options.positive and value <= 0 then fail(field, value, "a number above 0") end
   if options.integer and value ~= math.floor(value) then fail(field, value, "a whole number") end
   if options.min and value < options.min or options.max and value > options.max then
-    fail(field, value, options.min and options.max
-      and ("from %s to %s"):format(number.rounded(options.min, 6), number.rounded(options.max, 6))
-      or options.min and "at least " .. number.rounded(options.min, 6)
-      or "at most " .. number.rounded(options.max, 6))
+    local low = options.min and number.rounded(options.min, 6)
+    local high = options.max and number.rounded(options.max, 6)
+    local range = low and high and ("from %s to %s"):format(low, high)
+      or low and "at least " .. low or "at most " .. high
+    fail(field, value, unit == "1" and range or range .. " " .. unit)
   end
   return value
 end
@@ -76,7 +77,7 @@ function quantity.read(value, unit, field, options)
     fail(field, value, describe(unit))
   end
   if value ~= value or value - value ~= 0 then fail(field, value, "a finite number") end
-  if options then return check_limits(value, field, options) end
+  if options then return check_limits(value, unit, field, options) end
   return value
 end
 

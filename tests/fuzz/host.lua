@@ -23,4 +23,15 @@ return function()
   local failed, err = pcall(core.gap, "conformal", { pole = { shape = "hexagon" } })
   assert(failed == false and err)
   core.ring_ladder({ outer_diameter = 0.038, inner_diameter = 0.026, height = 0.008, gap = 0.004 }, 4)
+  core.sha256("abc")
+  local limits = { name = "n", memory = 1e7, instructions = 1e6, seconds = 10, result = 1e6 }
+  local function isolated(bare, text, answer)
+    limits.bare, limits.text, limits.answer, limits.request = bare, text, answer, { 1, "a" }
+    return core.isolated(limits)
+  end
+  assert(isolated(true, "return { 1, { x = 2 } }")[2].x == 2)
+  assert(isolated(false, "local q, ask = ... return (ask(q[2], 'b'):gsub('b', 'x'))",
+    function(a, b) return a .. b end) == "ax")
+  failed = pcall(isolated, false, "error { message = 'm', code = 'c' }")
+  assert(failed == false)
 end

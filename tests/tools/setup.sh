@@ -17,7 +17,7 @@ pkg-config|build|tells the compiler where Lua and LAPACKE are
 liblua5.4-dev|build|Lua's headers, for the binding
 liblapacke-dev|build|LAPACKE's headers
 lua-busted|test|the test runner
-lua-cjson|test|reads the JSON that the library writes
+lua-cjson|run|reads records back, to compare runs
 lua-check|lint|the Lua linter
 clang-tidy|lint|the C linter
 clang-format|lint|checks the layout of the C files

@@ -1,9 +1,10 @@
 --- From requirements to a part: turns, gap and wire for one core, and the search over cores.
 --
 -- For one core the turns rise from the fewest that the flux density could allow. Each count gets the
--- gap that gives the wanted inductance at the peak current, hot, with the nonlinear network; the first
--- count whose core stays within its flux density at the trip current, whose winding fits, and whose
--- gap takes a sensor is the answer: fewer turns saturate, more cost copper. Where only the sensor's
+-- gap that gives the wanted inductance at the peak current, at the worst temperature and with the gap
+-- ground too long by its tolerance; the first count whose core stays within its flux density at the
+-- trip current with the gap ground too short, whose winding fits, and whose gap takes a sensor is the
+-- answer: fewer turns saturate, more cost copper. Where only the sensor's
 -- height is in the way, more turns with a longer gap are tried first, then a pocket if the spec allows
 -- one.
 -- @module entrefer.design.candidates
@@ -34,16 +35,34 @@ local function new_part(req, core, turns, length, pocket, wire)
     windings = { { turns = turns, wire = wire } } }
 end
 
--- Flux densities at the element, and the clear height there.
-local function facts_of(req, part)
-  local function centre(current)
-    local solved = part:solve { current = current, temperature = req.hot }
-    return math.abs(solved.gaps[1].centre_flux_density), math.abs(solved.core_flux_density), solved
+-- The part with its gap off by the tolerance, up or down.
+local function off_by(req, part, sign)
+  return part:with { gap = part.gap_entries[1].length + sign * req.gap.tolerance }
+end
+
+-- The least inductance at the peak current: of all temperatures, with the gap ground too long. A spec by
+-- its ripple means the incremental inductance.
+function candidates.least_inductance(req, part)
+  local long, least, at = off_by(req, part, 1), math.huge, nil
+  for _, temperature in ipairs(req.temperatures) do
+    local value = long:solve { current = req.current.peak, temperature = temperature,
+      only = { req.inductance_kind } }[req.inductance_kind]
+    if value < least then least, at = value, temperature end
   end
-  local trip, core_trip, solved = centre(req.current.trip)
-  return { nominal = centre(req.current.nominal), trip = trip, core_trip = core_trip,
-    limb = solved.core_flux_density_limb, hot = req.hot, gaps = #part.gap_entries[1].units,
-    height = part.gap_entries[1].units[1].local_length }
+  return least, at
+end
+
+-- Flux densities at the element and in the core, and the clear height, each with the gap at its worse
+-- end.
+local function facts_of(req, part)
+  local short, long = off_by(req, part, -1), off_by(req, part, 1)
+  local at_trip = short:solve { current = req.current.trip, temperature = req.hot }
+  local nominal = long:solve { current = req.current.nominal, temperature = req.hot }
+  return { nominal = math.abs(nominal.gaps[1].centre_flux_density),
+    trip = math.abs(at_trip.gaps[1].centre_flux_density),
+    core_trip = math.abs(at_trip.core_flux_density), limb = at_trip.core_flux_density_limb,
+    hot = req.hot, gaps = #part.gap_entries[1].units,
+    height = short.gap_entries[1].units[1].local_length, short = short }
 end
 
 local function try_sensors(req, part)
@@ -81,18 +100,26 @@ local function try_pocket(req, core, turns, length, wire)
   end
 end
 
---- The gap for the wanted inductance, rounded down to the spec's step (rounding down keeps the
--- inductance).
+--- The gap for the wanted inductance at the worst temperature, less its tolerance, rounded down to the
+-- spec's step (each keeps the inductance).
 -- @treturn boolean whether a gap was found
 -- @treturn part|table the part, or the error
--- @treturn number the gap before rounding, m
 function candidates.gap(req, part, near)
-  local length, err = fail.try(part.gap_for, part, { inductance = req.inductance,
-    current = req.current.peak, temperature = req.hot, shortest = near and near / 3,
-    longest = near and near * 3 })
-  if not length then return false, err end
-  local rounded = math.max(req.gap.step, math.floor(length / req.gap.step + 1e-9) * req.gap.step)
-  return true, part:with { gap = rounded }, length
+  local shortest = math.huge
+  for _, temperature in ipairs(req.temperatures) do
+    local length, err = fail.try(part.gap_for, part, { inductance = req.inductance,
+      incremental = req.inductance_kind == "incremental_inductance", current = req.current.peak,
+      temperature = temperature, shortest = near and near / 3, longest = near and near * 3 })
+    if not length then return false, err end
+    shortest = math.min(shortest, length)
+  end
+  local step = req.gap.step
+  local rounded = math.floor((shortest - req.gap.tolerance) / step + 1e-9) * step
+  if rounded <= req.gap.tolerance then
+    return false, ("a gap of %.3f mm, which its tolerance of %.3f mm leaves nothing of"):format(
+      shortest * 1e3, req.gap.tolerance * 1e3)
+  end
+  return true, part:with { gap = rounded }
 end
 
 local function first_turns(req, core)
@@ -165,6 +192,11 @@ function candidates.with_core(req, core)
   if req.limits.volume and core.geometry.effective_volume > req.limits.volume then
     return nil, ("%.0f mm3, above the limit of %.0f mm3"):format(
       1e9 * core.geometry.effective_volume, 1e9 * req.limits.volume)
+  end
+  local pole = core.geometry.centre_pole
+  if pole and (pole.hole or 0) > 0 then
+    return nil, ("its post has a hole of %.1f mm, where a sensor on the axis sees little"):format(
+      pole.hole * 1e3)
   end
   local wire = wire_for(req)
   local design, reason, bare = search_turns(req, core, wire)

@@ -1,5 +1,6 @@
 --- The inductor flow: choose core, turns, gap, wire and sensor, and judge the result.
 -- @module entrefer.design.inductor
+local bobbin = require "entrefer.bobbin"
 local candidates = require "entrefer.design.candidates"
 local linearity = require "entrefer.design.linearity"
 local sensing = require "entrefer.design.sensing"
@@ -7,42 +8,41 @@ local verdict = require "entrefer.design.verdict"
 
 local inductor = {}
 
--- Mean turn in the middle of the winding's depth.
 local function mean_turn(design)
-  local geometry = design.part.core.geometry
-  local bobbin = design.part.bobbin
-  return geometry.inner_turn + 2 * math.pi * (bobbin.wall
-    + (geometry.window_width - bobbin.wall - bobbin.clearance) / 2)
+  local part = design.part
+  return (bobbin.new(part.core, part.bobbin):mean_turn { turns = design.turns,
+    wire = design.wire })
 end
 
---- DC resistance of the winding at the hot temperature, ohm: mean turn in the middle of the window.
+--- DC resistance of the winding at a temperature (degC), ohm, with the mean turn of its own build.
 function inductor.resistance(design, temperature)
   return design.turns * mean_turn(design) * design.wire:resistance_per_length(temperature)
 end
 
-local function flux_lines(req, design, at_peak)
+local function flux_lines(req, design)
   local facts, rules = design.facts, req.sensing
   local sensor = design.chosen.sensor
+  local least, temperature = candidates.least_inductance(req, design.part)
   return {
-    verdict.line("inductance", "inductance at the peak current, hot", at_peak.inductance,
-      req.inductance, "H", "at least"),
-    verdict.line("flux_density", "flux density of the core at the trip current, hot",
+    verdict.line("inductance", ("%s at the peak current, %g degC, long gap"):format(
+      req.inductance_kind:gsub("_", " "), temperature), least, req.inductance, "H", "at least"),
+    verdict.line("flux_density", "flux density of the core at the trip current, hot, short gap",
       facts.core_trip, req.flux_density_limit, "T", "at most"),
-    verdict.line("height", "clear height for the sensor", facts.height,
+    verdict.line("height", "clear height for the sensor, short gap", facts.height,
       sensing.height(sensor, rules), "m", "at least"),
     verdict.line("range", "flux density at the sensor, trip current", facts.trip,
       rules.most_use * sensor.range, "T", "at most"),
     verdict.line("signal", "flux density at the sensor, nominal current", facts.nominal,
       rules.least_use * sensor.range, "T", "at least"),
     verdict.line("nonlinearity", "shortfall of the reading at the trip current, hot",
-      math.max(linearity.shortfall(design.part, req.current.trip, req.hot), 0),
+      math.max(linearity.shortfall(facts.short, req.current.trip, req.hot), 0),
       req.limits.nonlinearity, "1", "at most"),
   }
 end
 
 local function judge(req, design)
   local at_peak = design.part:solve { current = req.current.peak, temperature = req.hot }
-  local lines = flux_lines(req, design, at_peak)
+  local lines = flux_lines(req, design)
   if req.sensing.bandwidth then
     lines[#lines + 1] = verdict.line("bandwidth", "bandwidth of the sensor",
       design.chosen.sensor.bandwidth or 0, req.sensing.bandwidth, "Hz", "at least")

@@ -1,6 +1,5 @@
 --- The spec of a part, checked and in SI units: what the converter asks for, what may be used.
 -- @module entrefer.design.requirements
-local data_file = require "entrefer.data_file"
 local fail = require "entrefer.fail"
 local material = require "entrefer.material"
 local quantity = require "entrefer.quantity"
@@ -30,6 +29,17 @@ local function section(spec, name)
   return value
 end
 
+local function list_of(value, default, field, allowed)
+  if value == nil then return default end
+  if type(value) ~= "table" then fail(field, value, allowed) end
+  return value
+end
+
+local function text_of(value, field)
+  if value ~= nil and type(value) ~= "string" then fail(field, value, "text") end
+  return value
+end
+
 local function positive(value, unit, field)
   if value == nil then fail.text(field, field .. " is missing") end
   return quantity.read(value, unit, field, { positive = true })
@@ -50,9 +60,13 @@ local function read_currents(spec)
   return { nominal = nominal, peak = peak, trip = trip }
 end
 
--- The inductance that holds the ripple: buck-type, worst at the given pair of voltages.
+-- The inductance, and which of the two is meant: what a spec gives is flux linkage / current; what holds
+-- the ripple (buck-type, worst at the given pair of voltages) is the incremental inductance.
 local function inductance_for(spec)
-  if spec.inductance ~= nil then return positive(spec.inductance, "H", "inductance"), "given" end
+  if spec.inductance ~= nil and spec.converter ~= nil then
+    fail.text("inductance", "inductance and converter are both given; allowed: one of them")
+  end
+  if spec.inductance ~= nil then return positive(spec.inductance, "H", "inductance"), "inductance" end
   if spec.converter == nil then
     fail.text("inductance", "inductance is missing; allowed: inductance, or converter with high, low,"
       .. " frequency and ripple")
@@ -62,12 +76,13 @@ local function inductance_for(spec)
   local frequency = positive(c.frequency, "Hz", "converter frequency")
   local ripple = positive(c.ripple, "A", "converter ripple")
   if low >= high then fail("converter low", low, ("below converter high, %g V"):format(high)) end
-  return (high - low) * low / high / (frequency * ripple), "from the ripple"
+  return (high - low) * low / high / (frequency * ripple), "incremental_inductance"
 end
 
 local function read_temperatures(spec)
   local list = {}
-  for i, value in ipairs(spec.temperatures or { 25, 100 }) do
+  local given = list_of(spec.temperatures, { 25, 100 }, "temperatures", "a list such as { 25, 100 }")
+  for i, value in ipairs(given) do
     list[i] = quantity.read(value, "degC", "temperature " .. i)
   end
   if #list == 0 then fail.text("temperatures", "temperatures is empty; allowed: at least one") end
@@ -84,7 +99,8 @@ local function read_limits(spec)
     saturation_share = share,
     current_density = optional(given.current_density, "A/m2", "limits current_density", 6e6),
     resistance = optional(given.resistance, "ohm", "limits resistance"),
-    nonlinearity = optional(given.nonlinearity, "1", "limits nonlinearity", 0.05),
+    nonlinearity = quantity.read(given.nonlinearity or 0.05, "1", "limits nonlinearity",
+      { positive = true, max = 1 }),
     volume = optional(given.volume, "m3", "limits volume"),
   }
 end
@@ -92,18 +108,24 @@ end
 local function read_sensing(spec)
   local given = section(spec, "sensing")
   local list = {}
-  for i, entry in ipairs(given.candidates or sensor.names()) do
+  local names = list_of(given.candidates, sensor.names(), "sensing candidates",
+    "a list of sensor classes or sensor tables")
+  for i, entry in ipairs(names) do
     list[i] = sensor.of(entry, "sensing candidate " .. i)
   end
   if #list == 0 then fail.text("sensing", "sensing candidates is empty; allowed: at least one") end
-  local use = given.range_use or { 0.3, 0.8 }
+  local use = list_of(given.range_use, { 0.3, 0.8 }, "sensing range_use", "a pair such as { 0.3, 0.8 }")
+  local least = quantity.read(use[1], "1", "sensing range_use, least", { min = 0, max = 1 })
+  local most = quantity.read(use[2], "1", "sensing range_use, most", { positive = true, max = 1 })
+  if least >= most then
+    fail("sensing range_use, least", least, ("below the most, %g"):format(most))
+  end
   local pocket = given.pocket and section(given, "pocket")
   return {
     candidates = list,
     clearance = quantity.read(given.clearance or 0.4e-3, "m", "sensing clearance", { min = 0 }),
     bandwidth = optional(given.bandwidth, "Hz", "sensing bandwidth"),
-    least_use = quantity.read(use[1], "1", "sensing range_use, least", { min = 0, max = 1 }),
-    most_use = quantity.read(use[2], "1", "sensing range_use, most", { positive = true, max = 1 }),
+    least_use = least, most_use = most,
     stacked = quantity.read(given.stacked or 1, "1", "sensing stacked",
       { integer = true, min = 1, max = 4 }),
     pocket = pocket and {
@@ -161,7 +183,8 @@ function requirements.read(spec, folder)
   end
   local gap, wire = section(spec, "gap"), section(spec, "wire")
   local read = {
-    title = spec.title or "untitled", purpose = spec.purpose, note = spec.note, kind = kind,
+    title = text_of(spec.title, "title") or "untitled", purpose = text_of(spec.purpose, "purpose"),
+    note = text_of(spec.note, "note"), kind = kind,
     current = read_currents(spec), temperatures = read_temperatures(spec),
     material = read_material(spec, folder or ""), cores = read_cores(spec),
     limits = read_limits(spec), sensing = read_sensing(spec),
@@ -178,18 +201,12 @@ function requirements.read(spec, folder)
   }
   read.hot = read.temperatures[#read.temperatures]
   if kind == "inductor" then
-    read.inductance, read.inductance_source = inductance_for(spec)
+    read.inductance, read.inductance_kind = inductance_for(spec)
   end
   read.turns = quantity.read(spec.turns or 1, "1", "turns", { positive = true })
   read.flux_density_limit = read.limits.flux_density
     or read.limits.saturation_share * read.material:saturation(read.hot)
   return read
-end
-
---- Reads and checks a spec file.
--- @string path
-function requirements.from_file(path)
-  return requirements.read(data_file.read(path, "spec file"), data_file.folder(path))
 end
 
 return requirements

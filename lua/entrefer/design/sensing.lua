@@ -71,21 +71,4 @@ function sensing.pick(facts, rules)
   return chosen, tried
 end
 
---- Whether nothing but the height speaks against some candidate: then a longer gap or a pocket helps.
--- @treturn number|nil least clear height that would do, m
-function sensing.height_would_help(tried, rules)
-  local least
-  for _, entry in ipairs(tried) do
-    local only_height = #entry.refusals > 0
-    for _, refusal in ipairs(entry.refusals) do
-      only_height = only_height and refusal.limit == "height"
-    end
-    if only_height then
-      local height = sensing.height(entry.sensor, rules)
-      if not least or height < least then least = height end
-    end
-  end
-  return least
-end
-
 return sensing

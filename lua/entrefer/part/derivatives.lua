@@ -67,7 +67,9 @@ local function gap_direction(part, fields, index)
   local half = 1e-4 * entry.length
   local lower = fields.fields_of(with_gap(part, fields, index, entry.length - half))
   local upper = fields.fields_of(with_gap(part, fields, index, entry.length + half))
-  return { elements = compare_elements(lower, upper, 2 * half),
+  local function centre_field(changed) return changed.gap_entries[index].units[1].centre_field end
+  return { centre_field = (centre_field(upper) - centre_field(lower)) / (2 * half),
+    elements = compare_elements(lower, upper, 2 * half),
     turns = compare_turns(lower, upper, #fields.windings, 2 * half) }
 end
 
@@ -114,8 +116,8 @@ local function direction(whole, part, by)
     .. " { permeability = true }")
 end
 
--- Flux density in the middle of a gap: mu0 u k / length; k, the field in a pocket or a ring's gap
--- relative to the plain one, is held. Force: -u^2/2 dP/dlength.
+-- Flux density in the middle of a gap: mu0 u k / length, k the field relative to the plain one. Force:
+-- -u^2/2 dP/dlength.
 local function gap_record(part, index, raw, by, way)
   local unit = part.gap_entries[index].units[1]
   local drop, _, _, _, force = part.solver:element(unit.element)
@@ -125,7 +127,8 @@ local function gap_record(part, index, raw, by, way)
     force = drop ~= 0 and 2 * force / drop * raw.drop[unit.element] or 0,
   }
   if by.gap == index then
-    record.centre_flux_density = record.centre_flux_density - factor * drop / unit.length
+    record.centre_flux_density = record.centre_flux_density
+      + core.mu0 * drop / unit.length * (way.centre_field - unit.centre_field / unit.length)
   end
   -- A neighbour's length changes this gap's edges, so its permeance too.
   local change = by.gap and way.elements[unit.element].by_length or 0

@@ -11,7 +11,15 @@ local function pole_area(pole)
   return pole.width * pole.depth - hole
 end
 
--- Total gap length of the series path through winding 1, and the area of its first pole.
+-- Area that the flux of winding 1 has in a gap: with the winding on the centre leg, that of both outer
+-- legs where both are gapped.
+local function gap_area(part, entry)
+  local area, winding = pole_area(entry.units[1].pole), part.windings[1]
+  local shared = part.topology == "three_leg" and #entry.legs == 2 and winding and winding.legs.centre
+  return shared and 2 * area or area
+end
+
+-- Total gap length of the series path through winding 1, and the area of its first gap.
 local function series_gap(part)
   local length, area = 0, nil
   for _, entry in ipairs(part.gap_entries) do
@@ -30,7 +38,7 @@ local function series_gap(part)
       end
     end
     length = length + times * unit.length
-    area = area or pole_area(unit.pole)
+    area = area or gap_area(part, entry)
   end
   return length, area
 end

@@ -82,8 +82,8 @@ function gaps.read(entry, index, core_set, default_leg)
     count = quantity.read(entry.count or 1, "1", label .. " count",
       { positive = true, integer = true, max = 64 }),
     position = quantity.read(entry.position or 0, "m", label .. " position"),
-    tolerance = entry.tolerance and
-      quantity.read(entry.tolerance, "m", label .. " tolerance", { min = 0 }),
+    tolerance = entry.tolerance and quantity.read(entry.tolerance, "m", label .. " tolerance",
+      { min = 0 }),
     pocket = read_pocket(entry.pocket, label .. " pocket"),
     method = check_choice(entry.method or "conformal", methods, label .. " method"),
     permeance = entry.permeance and
@@ -215,23 +215,49 @@ function gaps.edges(around)
   return { x_low = x_low, x_high = x_high, y_low = y, y_high = y }
 end
 
-local function apply_pocket(unit, pole, label)
-  local pocket = unit.entry.pocket
-  if not pocket then return end
+-- The user's pocket, or the pole's own centre hole. A gap of less than 0.001 or more than 5 diameters is
+-- out of the mode sum's range: then the hole is only taken off the area (`core.gap`).
+local function pocket_of(unit, pole)
+  local pocket, hole, label = unit.entry.pocket, pole.hole or 0, unit.entry.label
+  if not pocket then
+    if hole == 0 or unit.length < 1e-3 * hole or unit.length > 5 * hole then return nil end
+    return { diameter = hole, depth = 0, through = true }
+  end
   local most = math.min(pole.width, pole.depth)
   if pocket.diameter >= most then
     fail(label .. " pocket diameter", pocket.diameter,
       ("below %.4g m, the width of the pole"):format(most))
   end
-  local result = core.pocket(pocket, unit.length)
-  if result.permeance_loss >= unit.permeance then
-    fail(label .. " pocket diameter", pocket.diameter, "a pocket that leaves some of the gap")
+  if pocket.diameter < hole then
+    fail(label .. " pocket diameter", pocket.diameter,
+      ("at least %.4g m, the hole that the pole has"):format(hole))
   end
-  unit.permeance = unit.permeance - result.permeance_loss
-  unit.by_length = unit.by_length - result.loss_by_length
+  return pocket
+end
+
+local function solid(pole)
+  local copy = {}
+  for key, value in pairs(pole) do copy[key] = value end
+  copy.hole = 0
+  return copy
+end
+
+local function apply_pocket(unit, pocket, label)
+  local result = core.pocket(pocket, unit.length)
+  -- A permeance that is given was measured or solved with the pole's own hole.
+  if unit.entry.pocket or not unit.entry.permeance then
+    if result.permeance_loss >= unit.permeance then
+      fail(label .. " pocket diameter", pocket.diameter, "a pocket that leaves some of the gap")
+    end
+    unit.permeance = unit.permeance - result.permeance_loss
+    unit.by_length = unit.by_length - result.loss_by_length
+  end
   unit.centre_field = result.centre_field
-  unit.local_length = result.local_length
-  unit.notes[#unit.notes + 1] = label .. ": pocket or hole by an approximate mode sum"
+  -- A package seldom goes into the pole's own hole: beside it the gap has its plain height.
+  if unit.entry.pocket then unit.local_length = result.local_length end
+  unit.notes[#unit.notes + 1] = unit.entry.pocket
+    and label .. ": pocket or hole by an approximate mode sum"
+    or label .. ": the middle lies in the pole's hole, where the field is weak; place a sensor beside it"
 end
 
 --- Fills in a gap's permeance (H), its derivative by length (H/m), the field in its middle and on
@@ -239,7 +265,8 @@ end
 function gaps.evaluate(unit, pole, edges, winding_length)
   local entry = unit.entry
   unit.notes, unit.pole = {}, pole
-  unit.shape = { pole = pole, length = unit.length, edges = edges,
+  unit.pocket = pocket_of(unit, pole)
+  unit.shape = { pole = unit.pocket and solid(pole) or pole, length = unit.length, edges = edges,
     winding_length = winding_length }
   local result = core.gap(entry.method, unit.shape)
   unit.method, unit.fringing, unit.face = entry.method, result.fringing, result.face
@@ -252,7 +279,7 @@ function gaps.evaluate(unit, pole, edges, winding_length)
     unit.fringing = unit.permeance / unit.plain_permeance
   end
   unit.centre_field, unit.local_length = 1, unit.length
-  apply_pocket(unit, pole, entry.label)
+  if unit.pocket then apply_pocket(unit, unit.pocket, entry.label) end
 end
 
 return gaps
