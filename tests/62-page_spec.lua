@@ -66,6 +66,7 @@ describe("a page", function()
     refuses("page name", "letters", page.table, page, "../x", { columns = { { name = "a" } }, rows = {} })
     page:table("t", { columns = { { name = "a" } }, rows = {} })
     refuses("page name", "not used", page.table, page, "t", { columns = { { name = "a" } }, rows = {} })
+    refuses("page name", "not used", page.table, page, "results", { columns = { { name = "a" } }, rows = {} })
     refuses("plot series", "at least one", page.plot, page, "p",
       { title = "t", x = { label = "x" }, y = { label = "y" }, series = {} })
     refuses("series 1 points", "as many", page.plot, page, "p", { title = "t", x = { label = "x" },

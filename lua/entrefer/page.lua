@@ -30,12 +30,17 @@ local function words(value, field)
   return value
 end
 
+-- The page's own files.
+local reserved = { report = true, results = true, provenance = true }
+
 -- Names become files, so they are short and plain, and none is used twice.
 local function take_name(self, name)
   if type(name) ~= "string" or not name:match("^[%w_-]+$") or #name > 64 then
     fail("page name", name, "at most 64 letters, digits, - and _")
   end
-  if self.names[name] then fail("page name", name, "a name not used before on the page") end
+  if self.names[name] or reserved[name] then
+    fail("page name", name, "a name not used before on the page")
+  end
   self.names[name] = true
   return name
 end
