@@ -203,10 +203,9 @@ local function window_edge(facing, window_width, crowd)
 end
 
 --- The edges of one gap.
--- @tparam table unit single gap
 -- @tparam table around `length` of the gap, m; `below`, `above`: iron to the next gap or yoke, m;
---   `below_gap`, `above_gap`: whether that is a gap; `wound`; `yoke` thickness, m; `spread` from `gaps.spread`;
---   `window_width`, m;
+--   `below_gap`, `above_gap`: whether that is a gap; `wound`; `yoke` thickness, m; `spread` from
+--   `gaps.spread`; `window_width`, m;
 --   `facing`: for the sides x_low, x_high: nil = open side, else the leg across the window as
 --   `{ share = this gap's part of the length of both gaps at this height, same = true where a gap
 --   faces it and both legs carry flux the same way }`; `shell`: the facing leg goes all around;
