@@ -123,17 +123,20 @@ local function random_network(random)
 end
 
 describe("random networks", function()
-  it("all converge from a cold start, and fluxes balance", function()
-    local random, most = stream(20261), 0
-    for _ = 1, 3000 do
+  local function converge(seed, count)
+    local random, most = stream(seed), 0
+    for i = 1, count do
       local net, currents = random_network(random)
       local s = net:solve { current = currents }
       most = math.max(most, s.iterations)
-      assert.is_true(s.energy == s.energy and s.energy < math.huge)
+      assert.is_true(s.energy >= 0 and s.energy < math.huge, "energy of network " .. i)
     end
     -- Deep saturation doubles the field in each step, so the decades of current bound the number.
-    assert.is_true(most <= 120, "iterations: " .. most)
-  end)
+    assert.is_true(most <= 80, "iterations: " .. most)
+  end
+
+  it("all converge from a cold start", function() converge(20261, 3000) end)
+  it("all converge, a hundred thousand of them #slow", function() converge(20262, 100000) end)
 
   it("store energy + coenergy = sum of linkage times current", function()
     local random = stream(77)

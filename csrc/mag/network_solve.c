@@ -94,14 +94,16 @@ static double total_coenergy(const ef_network *n) {
   return sum;
 }
 
-/* Steps that may be accepted on the slope alone before the coenergy itself has to fall. */
+/* Steps that may end past the minimum before the line search becomes strict. */
 enum { TRUSTING_STEPS = 20 };
 
 /* Moves along the step. The coenergy is convex, so while its slope along the step stays negative it
  * has fallen. A little past the minimum (slope below a tenth of the first, as near the solution) is
  * taken too, for a limited number of steps, after which the coenergy must not have risen beyond
  * rounding. Otherwise the fall is checked (Armijo) and the step shortened by the secant of the
- * slope, which makes the method converge from anywhere. */
+ * slope, which makes the method converge from anywhere. A step that has fallen but ends far past
+ * the minimum is at first taken as it is; later it is shortened too, or two knees on either side of
+ * the minimum would throw the iterates to and fro (the curvature condition of Wolfe). */
 static void line_search(ef_network *n, int trusting) {
   double size, start_slope = slope_along(n, &size), share = 1;
   double rounding = 64 * DBL_EPSILON * size, small = -0.1 * start_slope;
@@ -114,7 +116,7 @@ static void line_search(ef_network *n, int trusting) {
     move(n, -share);
     if (isnan(before)) before = total_coenergy(n);
     double allowed = slope <= small ? 64 * DBL_EPSILON * before : 1e-4 * share * start_slope;
-    if (after <= before + allowed) {
+    if (after <= before + allowed && (trusting || slope <= small)) {
       move(n, share);
       return;
     }
@@ -169,10 +171,30 @@ static double coercive_flux(const ef_network *n) {
   return largest;
 }
 
+/* Largest flux that the strongest source could drive through the best path. Where the sources stand
+ * in no loop the flux is zero and only its rounding is left, which has no scale of its own. */
+static double drivable_flux(const ef_network *n) {
+  double source = 0, permeance = 0;
+  for (size_t k = 0; k < n->branches; k++) {
+    source = larger(source, fabs(n->source[k]));
+    permeance = larger(permeance, n->chain_permeance[k]);
+  }
+  return source * permeance;
+}
+
+/* Clears what rounding has left in a network that carries no flux. */
+static void clear_residue(ef_network *n) {
+  double scale = larger(sum_up_nodes(n), coercive_flux(n));
+  if (scale > 16 * DBL_EPSILON * DBL_EPSILON * drivable_flux(n)) return;
+  memset(n->drop, 0, n->elements * sizeof *n->drop);
+  evaluate(n);
+}
+
 /* Largest imbalance relative to the flux magnitudes; *met tells whether every node and chain is
  * within its limit. */
 static double imbalance(ef_network *n, double tolerance, int *met) {
-  double floor = 16 * DBL_EPSILON * larger(sum_up_nodes(n), coercive_flux(n)), worst = 0;
+  double scale = larger(sum_up_nodes(n), coercive_flux(n)), worst = 0;
+  double floor = 16 * DBL_EPSILON * scale;
   *met = chains_agree(n, tolerance, floor);
   for (size_t i = 0; i < n->nodes; i++) {
     double off = fabs(n->balance[i]);
@@ -225,6 +247,7 @@ ef_status ef_network_solve(ef_context *context, ef_network *n, const ef_network_
       move(n, 1);
     else
       line_search(n, i <= TRUSTING_STEPS);
+    clear_residue(n);
     double residual = imbalance(n, context->tolerance, &met);
     if (!isfinite(residual)) break;
     if (met) {
