@@ -97,19 +97,21 @@ describe("random networks", function()
   end)
 end)
 
+local function agree(method, key, case, tolerance, field)
+  if not section.available() then
+    pending "FreeFem++ is not installed: nothing compared"
+    return
+  end
+  local c = method.compare(case)
+  near(c.elements, c[key], tolerance, "inductance")
+  assert(math.abs(c.field) < field, ("flux density in the middle of the gap is off by %.3g")
+    :format(c.field))
+end
+
 describe("the ladder of an E core", function()
   -- What the method neglects: edges are those of a single corner (gap < window), the air behind the
   -- outer legs' yokes. Finite elements: below 0.1 %, see the first case.
-  local function agrees(case, tolerance, field)
-    if not section.available() then
-      pending "FreeFem++ is not installed: nothing compared"
-      return
-    end
-    local c = section.compare(case)
-    near(c.elements, c.ladder, tolerance, "inductance per depth")
-    assert(math.abs(c.field) < field, ("flux density in the middle of the gap is off by %.3g")
-      :format(c.field))
-  end
+  local function agrees(...) agree(section, "ladder", ...) end
 
   it("is judged by finite elements that have converged", function()
     if not section.available() then
@@ -144,16 +146,7 @@ describe("the ladder of an E core", function()
 end)
 
 describe("a pot core", function()
-  local function agrees(case, tolerance, field)
-    if not section.available() then
-      pending "FreeFem++ is not installed: nothing compared"
-      return
-    end
-    local c = pot.compare(case)
-    near(c.elements, c.part, tolerance, "inductance")
-    assert(math.abs(c.field) < field, ("flux density in the middle of the gap is off by %.3g")
-      :format(c.field))
-  end
+  local function agrees(...) agree(pot, "part", ...) end
 
   it("carries the field's inductance with a gap in the post", function()
     -- The plane closed forms around a round post: see docs/methods/network.md. Finite elements: 0.1 %.

@@ -182,19 +182,24 @@ static double drivable_flux(const ef_network *n) {
   return source * permeance;
 }
 
-/* Clears what rounding has left in a network that carries no flux. */
-static void clear_residue(ef_network *n) {
-  double scale = larger(sum_up_nodes(n), coercive_flux(n));
-  if (scale > 16 * DBL_EPSILON * DBL_EPSILON * drivable_flux(n)) return;
-  memset(n->drop, 0, n->elements * sizeof *n->drop);
-  evaluate(n);
+/* Sums up the nodes; returns the flux against which rounding is judged. */
+static double flux_scale(ef_network *n) {
+  return larger(sum_up_nodes(n), coercive_flux(n));
 }
 
-/* Largest imbalance relative to the flux magnitudes; *met tells whether every node and chain is
- * within its limit. */
-static double imbalance(ef_network *n, double tolerance, int *met) {
-  double scale = larger(sum_up_nodes(n), coercive_flux(n)), worst = 0;
-  double floor = 16 * DBL_EPSILON * scale;
+/* Clears what rounding has left in a network that carries no flux; returns the flux scale. */
+static double clear_residue(ef_network *n) {
+  double scale = flux_scale(n);
+  if (scale > 16 * DBL_EPSILON * DBL_EPSILON * drivable_flux(n)) return scale;
+  memset(n->drop, 0, n->elements * sizeof *n->drop);
+  evaluate(n);
+  return flux_scale(n);
+}
+
+/* Largest imbalance of the nodes as summed up, relative to the flux magnitudes; *met tells whether
+ * every node and chain is within its limit. */
+static double imbalance(const ef_network *n, double scale, double tolerance, int *met) {
+  double floor = 16 * DBL_EPSILON * scale, worst = 0;
   *met = chains_agree(n, tolerance, floor);
   for (size_t i = 0; i < n->nodes; i++) {
     double off = fabs(n->balance[i]);
@@ -247,8 +252,7 @@ ef_status ef_network_solve(ef_context *context, ef_network *n, const ef_network_
       move(n, 1);
     else
       line_search(n, i <= TRUSTING_STEPS);
-    clear_residue(n);
-    double residual = imbalance(n, context->tolerance, &met);
+    double residual = imbalance(n, clear_residue(n), context->tolerance, &met);
     if (!isfinite(residual)) break;
     if (met) {
       n->solved = 1;
